@@ -1,0 +1,25 @@
+//! The vehicles that come with the crate.
+
+use crate::error::{Error, Result, Violation};
+use crate::spec::nearest;
+use crate::vehicle::Vehicle;
+
+const EXAMPLES: [(&str, &str); 1] = [("roadster", include_str!("../data/roadster.toml"))];
+
+impl Vehicle {
+    /// Names of the example vehicles.
+    pub fn examples() -> Vec<&'static str> {
+        EXAMPLES.iter().map(|(name, _)| *name).collect()
+    }
+
+    /// An example vehicle by name. All of them are inventions.
+    pub fn example(name: &str) -> Result<Self> {
+        match EXAMPLES.iter().find(|(known, _)| *known == name) {
+            Some((_, text)) => Self::from_toml(text),
+            None => Err(Error::invalid(
+                Violation::new("example", format!("\"{name}\""), "no such example")
+                    .hint(nearest(name, Self::examples().into_iter())),
+            )),
+        }
+    }
+}

@@ -1,0 +1,162 @@
+//! Modes with damping, from the first-order form.
+//!
+//! The second-order part is taken in its elastic modes with states [ω a, ȧ]: then the state matrix is
+//! [[0, Ω], [−Ω, −C]], whose size is that of the largest pole and not of its square, and the rounding
+//! of the eigenvalues stays relative to that. Eigenvalues and vectors come from faer, which brings
+//! vectors of non-symmetric matrices (also where poles repeat) in pure Rust.
+
+use nalgebra::DMatrix;
+use num_complex::Complex64;
+
+use super::undamped::{elastic, whiten};
+use super::RawMode;
+use crate::error::{Error, Result};
+use crate::system::{Canonical, LinearSystem};
+
+/// Poles in the closed upper half-plane with their shapes, by ascending |λ|.
+pub(super) fn solve(system: &LinearSystem) -> Result<Vec<RawMode>> {
+    let form = FirstOrder::new(system.canonical()?)?;
+    let size = form.state.nrows();
+    let matrix = faer::Mat::from_fn(size, size, |i, j| form.state[(i, j)]);
+    let eigen = faer::linalg::solvers::Eigen::new_from_real(matrix.as_ref()).map_err(|_| Error::NotConverged {
+        what: "eigenvalues of the state matrix".into(),
+        iterations: 0,
+        residual: f64::NAN,
+        last: Vec::new(),
+    })?;
+    let mut modes: Vec<RawMode> = (0..size)
+        .filter_map(|k| {
+            let pole = eigen.S()[k];
+            let pole = Complex64::new(pole.re, pole.im);
+            // One of each conjugate pair.
+            (pole.im >= 0.0).then(|| {
+                let state = |i: usize| {
+                    let entry = eigen.U()[(i, k)];
+                    Complex64::new(entry.re, entry.im)
+                };
+                RawMode { pole, shape: form.shape(pole, state) }
+            })
+        })
+        .collect();
+    modes.sort_by(|a, b| a.pole.norm().total_cmp(&b.pole.norm()).then(a.pole.re.total_cmp(&b.pole.re)));
+    Ok(modes)
+}
+
+/// ẋ = A x with x = [s a, η̇, t ζ]: elastic modal coordinates, all second-order rates, first-order ones.
+struct FirstOrder<'a> {
+    split: &'a Canonical,
+    state: DMatrix<f64>,
+    /// Physical coordinates per whitened second-order coordinate (circulations first, then elastic modes).
+    second: DMatrix<f64>,
+    /// Physical coordinates per whitened first-order coordinate (circulations first).
+    first: DMatrix<f64>,
+    c_sf: DMatrix<f64>,
+    second_scale: Vec<f64>,
+    first_scale: Vec<f64>,
+}
+
+impl<'a> FirstOrder<'a> {
+    fn new(split: &'a Canonical) -> Result<Self> {
+        let singular = |matrix: &str| Error::Singular { matrix: matrix.into(), motion: "no inverse".into() };
+        let (loops, first_loops) = (split.second_loops, split.first_loops);
+        let ns = split.mass.nrows();
+        let nf = split.c_ff.nrows();
+        let (np, nz) = (ns - loops, nf - first_loops);
+        let whitened = whiten(split)?;
+        let (values, vectors) = elastic(&whitened, loops);
+        let mut modal = DMatrix::identity(ns, ns);
+        modal.view_mut((loops, loops), (np, np)).copy_from(&vectors);
+        let to_second = whitened.to_second * modal;
+        let mut to_first = DMatrix::identity(nf, nf);
+        if nf > 0 {
+            let factor = split.c_ff.clone().cholesky().ok_or_else(|| singular("damping"))?;
+            factor.l_dirty().tr_solve_lower_triangular_mut(&mut to_first);
+        }
+        let c_ss = to_second.transpose() * &split.c_ss * &to_second;
+        let c_sf = to_second.transpose() * &split.c_sf * &to_first;
+        let k_sf = to_second.transpose() * &split.k_sf * &to_first;
+        let k_ff = to_first.transpose() * &split.k_ff * &to_first;
+        // Scales that balance the state matrix.
+        let scale = |square: f64| if square > 0.0 { square.sqrt() } else { 1.0 };
+        let floor = values.iter().fold(0.0_f64, |most, value| most.max(*value)) * f64::EPSILON;
+        let second_scale: Vec<f64> = values.iter().map(|value| scale(value.abs().max(floor))).collect();
+        let first_scale: Vec<f64> = (0..nz).map(|i| scale(k_ff[(first_loops + i, first_loops + i)])).collect();
+
+        // ζ̇ = −C_fs η̇ − K_fs η − K_ff ζ over the states, with C_ff = I
+        let size = np + ns + nz;
+        let mut first_rate = DMatrix::zeros(nf, size);
+        for i in 0..nf {
+            for j in 0..np {
+                first_rate[(i, j)] = -k_sf[(loops + j, i)] / second_scale[j];
+            }
+            for j in 0..ns {
+                first_rate[(i, np + j)] = -c_sf[(j, i)];
+            }
+            for j in 0..nz {
+                first_rate[(i, np + ns + j)] = -k_ff[(i, first_loops + j)] / first_scale[j];
+            }
+        }
+        let mut state = DMatrix::zeros(size, size);
+        // η̈ = −K η − C η̇ − K_sf ζ − C_sf ζ̇
+        let exchange = &c_sf * &first_rate;
+        for i in 0..ns {
+            for j in 0..size {
+                state[(np + i, j)] = -exchange[(i, j)];
+            }
+            for j in 0..ns {
+                state[(np + i, np + j)] -= c_ss[(i, j)];
+            }
+            for j in 0..nz {
+                state[(np + i, np + ns + j)] -= k_sf[(i, first_loops + j)] / first_scale[j];
+            }
+        }
+        for i in 0..np {
+            state[(i, np + loops + i)] = second_scale[i];
+            state[(np + loops + i, i)] -= values[i] / second_scale[i];
+        }
+        for i in 0..nz {
+            for j in 0..size {
+                state[(np + ns + i, j)] = first_scale[i] * first_rate[(first_loops + i, j)];
+            }
+        }
+        Ok(Self {
+            split,
+            state,
+            second: &split.second * to_second,
+            first: &split.first * to_first,
+            c_sf,
+            second_scale,
+            first_scale,
+        })
+    }
+
+    // The physical shape of an eigenvector. A circulation has a flow; its volume is the flow over λ.
+    fn shape(&self, pole: Complex64, state: impl Fn(usize) -> Complex64) -> Vec<Complex64> {
+        let (loops, first_loops) = (self.split.second_loops, self.split.first_loops);
+        let ns = self.second.ncols();
+        let nf = self.first.ncols();
+        let np = ns - loops;
+        let over_pole = |flow: Complex64| if pole.norm() > 0.0 { flow / pole } else { Complex64::new(0.0, 0.0) };
+        let second: Vec<Complex64> = (0..ns)
+            .map(|i| if i < loops { over_pole(state(np + i)) } else { state(i - loops) / self.second_scale[i - loops] })
+            .collect();
+        let first: Vec<Complex64> = (0..nf)
+            .map(|i| {
+                if i < first_loops {
+                    // ζ̇ = −C_fs η̇ where nothing stores
+                    let flow: Complex64 = (0..ns).map(|j| state(np + j) * -self.c_sf[(j, i)]).sum();
+                    over_pole(flow)
+                } else {
+                    state(np + ns + i - first_loops) / self.first_scale[i - first_loops]
+                }
+            })
+            .collect();
+        (0..self.second.nrows())
+            .map(|row| {
+                let from_second: Complex64 = (0..ns).map(|i| second[i] * self.second[(row, i)]).sum();
+                let from_first: Complex64 = (0..nf).map(|i| first[i] * self.first[(row, i)]).sum();
+                from_second + from_first
+            })
+            .collect()
+    }
+}

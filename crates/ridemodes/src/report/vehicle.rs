@@ -1,0 +1,94 @@
+//! Tables of the vehicle and its operating point.
+
+use super::{Table, Tables, degrees, fixed, percent};
+use crate::axes::{CORNER_NAMES, CORNERS};
+use crate::statics::OperatingPoint;
+use crate::vehicle::Vehicle;
+
+impl Vehicle {
+    /// Every number with its path, value and unit.
+    pub fn table(&self) -> Table {
+        let name = self.name().unwrap_or("vehicle");
+        let mut table = Table::new(format!("Vehicle {name}"), &["path", "value", "unit", "meaning"]);
+        for parameter in self.parameters() {
+            table.row([
+                parameter.path,
+                significant(parameter.value),
+                parameter.unit.to_owned(),
+                parameter.meaning.trim_end_matches('.').to_owned(),
+            ]);
+        }
+        if let Some(description) = self.description() {
+            table = table.note(description);
+        }
+        if !self.settings().is_empty() {
+            table = table.note(format!("settings: {}", self.settings().join(", ")));
+        }
+        table
+    }
+}
+
+fn significant(value: f64) -> String {
+    if value != 0.0 && !(1e-3..1e6).contains(&value.abs()) { format!("{value:.4e}") } else { format!("{value:.6}").trim_end_matches('0').trim_end_matches('.').to_owned() }
+}
+
+impl OperatingPoint {
+    /// Corner loads and circuits, for people.
+    pub fn tables(&self) -> Tables {
+        let mut tables = vec![self.corner_table()];
+        if !self.circuits.is_empty() {
+            tables.push(self.circuit_table());
+        }
+        Tables(tables)
+    }
+
+    /// What carries each corner.
+    pub fn corner_table(&self) -> Table {
+        let mut table = Table::new(
+            "Static loads at the design condition",
+            &["corner", "tyre N", "sprung N", "oil N", "spring N (at wheel)", "oil %", "preload N (in spring)", "deflection mm"],
+        );
+        for corner in CORNERS {
+            table.row([
+                CORNER_NAMES[corner.index()].replace('_', " "),
+                fixed(self.tyre_load[corner], 0),
+                fixed(self.corner_load[corner], 0),
+                fixed(self.oil_load[corner], 0),
+                fixed(self.spring_load[corner], 0),
+                percent(self.oil_load[corner] / self.corner_load[corner]),
+                fixed(self.spring_preload[corner], 0),
+                fixed(1e3 * self.deflection[corner], 1),
+            ]);
+        }
+        let mut table = table.note(format!(
+            "heave {} mm, pitch {} deg, roll {} deg from the design height; {} °C",
+            fixed(1e3 * self.attitude[0], 1),
+            fixed(degrees(self.attitude[1]), 2),
+            fixed(degrees(self.attitude[2]), 2),
+            fixed(self.temperature - 273.15, 1)
+        ));
+        for warning in &self.warnings {
+            table = table.note(format!("warning: {warning}"));
+        }
+        table
+    }
+
+    /// Pressure and gas of each circuit.
+    pub fn circuit_table(&self) -> Table {
+        let mut table = Table::new(
+            "Accumulators",
+            &["accumulator", "bar abs", "bar gauge", "gas cm³", "empty of oil cm³", "empty below bar abs"],
+        );
+        for state in &self.accumulators {
+            table.row([
+                state.name.clone(),
+                fixed(state.pressure / 1e5, 2),
+                fixed((state.pressure - self.atmosphere) / 1e5, 2),
+                fixed(1e6 * state.gas_volume, 1),
+                fixed(1e6 * state.full_volume, 1),
+                fixed(state.empty_pressure / 1e5, 2),
+            ]);
+        }
+        table
+    }
+}

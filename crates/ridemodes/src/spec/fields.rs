@@ -1,0 +1,299 @@
+//! The tables of the vehicle file.
+
+use std::collections::BTreeMap;
+
+use serde::{Deserialize, Serialize};
+
+use super::schema::{Bounds, Choice, Described, Field, Kind, Named, Presence, Schema, TablePresence, tables};
+use crate::axes::Corner;
+use crate::units::STANDARD_ATMOSPHERE;
+
+const ANY: Bounds = Bounds::ANY;
+const NOT_NEGATIVE: Bounds = Bounds::NOT_NEGATIVE;
+const POSITIVE: Bounds = Bounds::POSITIVE;
+
+macro_rules! words {
+    ($( $(#[doc = $doc:literal])+ $name:ident { $( $(#[doc = $meaning:literal])+ $variant:ident = $word:literal, )+ } )+) => { $(
+        $(#[doc = $doc])+
+        #[derive(Clone, Copy, Debug, PartialEq, Eq, Serialize, Deserialize)]
+        pub enum $name { $( $(#[doc = $meaning])+ #[serde(rename = $word)] $variant, )+ }
+
+        impl Choice for $name {
+            const WORDS: &'static [&'static str] = &[$($word),+];
+        }
+    )+ };
+}
+
+words! {
+    /// How the oil of a pipe is accelerated.
+    Inertia {
+        /// Plug flow: ρL/A.
+        Plug = "plug",
+        /// Developed laminar flow at low frequency: 4/3 of the plug's.
+        Developed = "developed",
+        /// Left out.
+        None = "none",
+    }
+
+    /// How the chambers of the four cylinders are joined to circuits.
+    LayoutKind {
+        /// Two circuits: the chambers that bump squeezes on one side with those that bump expands
+        /// on the other. Stiff in roll.
+        Roll = "roll",
+        /// Two circuits: those squeezed on one axle with those expanded on the other. Stiff in pitch.
+        Pitch = "pitch",
+        /// Four circuits: each squeezed chamber with the expanded one diagonally opposite. Stiff in
+        /// roll and pitch.
+        Diagonal = "diagonal",
+        /// Two circuits: all that bump squeezes, all that bump expands. Stiff in heave alone.
+        Heave = "heave",
+        /// As `roll`, but each axle on its own: four circuits. Stiff in roll and warp.
+        AxleRoll = "axle_roll",
+    }
+}
+
+tables! {
+    /// A four-wheeled vehicle at its design condition (file format 1).
+    Spec {
+        /// Name for headings.
+        name: Option<String> = text,
+        /// What the vehicle is, for people.
+        description: Option<String> = text,
+        /// Temperature of oil and gas at the design condition.
+        temperature: N = number("K", Bounds::within(200.0, 450.0), 293.15),
+        /// Pressure of the air around.
+        atmosphere: N = pressure(STANDARD_ATMOSPHERE),
+        /// Body.
+        body: Body<N> = table(Body),
+        /// Front axle.
+        front: Axle<N> = table(Axle),
+        /// Rear axle.
+        rear: Axle<N> = table(Axle),
+        /// Oil in all circuits.
+        oil: Option<Oil<N>> = maybe(Oil),
+        /// Circuits laid out by a rule.
+        layout: Option<Layout<N>> = maybe(Layout),
+        /// Circuits given one by one.
+        circuits: Named<Circuit<N>> = named(Circuit),
+        /// Places where people sit.
+        seats: Named<Seat<N>> = named(Seat),
+        /// Named settings: values by path that override the file's.
+        settings: Named<BTreeMap<String, serde_json::Value>> = overrides,
+    }
+
+    /// Sprung mass with all that is fixed to it.
+    Body {
+        /// Sprung mass.
+        mass: N = number("kg", POSITIVE),
+        /// Moment of inertia about the roll axis x through the centre of gravity.
+        roll_inertia: N = number("kg*m^2", POSITIVE),
+        /// Moment of inertia about the pitch axis y through the centre of gravity.
+        pitch_inertia: N = number("kg*m^2", POSITIVE),
+        /// Product of inertia of roll and pitch, the integral of x·y over the mass.
+        roll_pitch_product: N = number("kg*m^2", ANY, 0.0),
+        /// Height of the centre of gravity above the ground.
+        cg_height: N = number("m", POSITIVE),
+        /// Offset of the centre of gravity to the left of the centre line.
+        cg_offset: N = number("m", ANY, 0.0),
+        /// Static warp preload, (FL − FR − RL + RR)/4 of the sprung corner loads.
+        warp_preload: N = number("N", ANY, 0.0),
+    }
+
+    /// Axle, either with `both` corners alike or with `left` and `right` apart.
+    Axle {
+        /// Distance of the axle from the body's centre of gravity, ahead for the front, behind for the rear.
+        distance: N = number("m", POSITIVE),
+        /// Track width.
+        track: N = number("m", POSITIVE),
+        /// Height of the roll centre above the ground.
+        roll_centre_height: N = number("m", ANY, 0.0),
+        /// Anti-roll bar.
+        anti_roll_bar: Option<AntiRollBar<N>> = maybe(AntiRollBar),
+        /// Both corners.
+        both: Option<CornerSpec<N>> = maybe(CornerSpec),
+        /// Left corner.
+        left: Option<CornerSpec<N>> = maybe(CornerSpec),
+        /// Right corner.
+        right: Option<CornerSpec<N>> = maybe(CornerSpec),
+    }
+
+    /// Anti-roll bar.
+    AntiRollBar {
+        /// Moment per angle of roll of the axle relative to the body.
+        rate: N = number("N*m/rad", NOT_NEGATIVE),
+    }
+
+    /// Wheel, tyre and suspension of one corner.
+    CornerSpec {
+        /// Unsprung mass.
+        unsprung_mass: N = number("kg", POSITIVE),
+        /// Tyre.
+        tyre: Tyre<N> = table(Tyre),
+        /// Spring.
+        spring: Option<Spring<N>> = maybe(Spring),
+        /// Damper.
+        damper: Option<Damper<N>> = maybe(Damper),
+        /// Hydraulic cylinder.
+        cylinder: Option<Cylinder<N>> = maybe(Cylinder),
+    }
+
+    /// Tyre, vertically.
+    Tyre {
+        /// Vertical rate.
+        rate: N = number("N/m", POSITIVE),
+        /// Vertical damping.
+        damping: N = number("N*s/m", NOT_NEGATIVE, 0.0),
+    }
+
+    /// Suspension spring.
+    Spring {
+        /// Rate of the spring itself.
+        rate: N = number("N/m", NOT_NEGATIVE),
+        /// Spring travel over wheel travel.
+        motion_ratio: N = number("1", POSITIVE, 1.0),
+    }
+
+    /// Suspension damper beside any cylinder.
+    Damper {
+        /// Force per velocity of the damper itself.
+        coefficient: N = number("N*s/m", NOT_NEGATIVE),
+        /// Damper travel over wheel travel.
+        motion_ratio: N = number("1", POSITIVE, 1.0),
+        /// Rate of a mount in series with the damper; absent means rigid.
+        mount_rate: Option<N> = optional("N/m", POSITIVE),
+    }
+
+    /// Double-acting hydraulic cylinder between wheel and body; bump squeezes its `bump` chamber
+    /// (full piston area) and expands its `rebound` chamber (rod side).
+    Cylinder {
+        /// Bore.
+        bore: N = number("m", POSITIVE),
+        /// Rod diameter, on the rebound side.
+        rod: N = number("m", NOT_NEGATIVE),
+        /// Piston travel over wheel travel.
+        motion_ratio: N = number("1", POSITIVE, 1.0),
+        /// Stroke; at rest the piston is in its middle. Sets the oil volume of the chambers.
+        stroke: N = number("m", NOT_NEGATIVE, 0.0),
+    }
+
+    /// Oil.
+    Oil {
+        /// Density at 15 °C.
+        density: N = number("kg/m^3", POSITIVE),
+        /// Bulk modulus without air; absent means incompressible.
+        bulk_modulus: Option<N> = optional("Pa", POSITIVE),
+        /// Kinematic viscosity at 40 °C.
+        kinematic_viscosity: N = number("m^2/s", POSITIVE),
+        /// Kinematic viscosity at 100 °C.
+        kinematic_viscosity_hot: N = number("m^2/s", POSITIVE),
+        /// Thermal expansion.
+        expansion: N = number("1/K", NOT_NEGATIVE, 7e-4),
+        /// Volume of entrained air per volume of oil at atmospheric pressure.
+        air_fraction: N = number("1", Bounds::within(0.0, 0.5), 0.0),
+        /// Polytropic exponent of the entrained air.
+        air_exponent: N = number("1", Bounds::within(1.0, 2.5), 1.4),
+    }
+
+    /// Oil circuit at one pressure: chambers and accumulators joined at a hub.
+    Circuit {
+        /// System pressure at the design condition.
+        pressure: N = pressure,
+        /// Oil volume at the hub beside that of chambers and lines.
+        volume: N = number("m^3", NOT_NEGATIVE, 0.0),
+        /// Chambers, keyed by corner and side, e.g. `front_left_bump`.
+        chambers: Named<Port<N>> = named(Port),
+        /// Accumulators.
+        accumulators: Named<Accumulator<N>> = named(Accumulator),
+    }
+
+    /// Way from a cylinder chamber to the hub of its circuit.
+    Port {
+        /// Resistance of the port throttle.
+        throttle: N = number("Pa*s/m^3", NOT_NEGATIVE, 0.0),
+        /// Line; absent means the chamber is at the hub.
+        line: Option<Line<N>> = maybe(Line),
+    }
+
+    /// Line by its geometry.
+    Line {
+        /// Length.
+        length: N = number("m", POSITIVE),
+        /// Inner diameter.
+        bore: N = number("m", POSITIVE),
+        /// How its oil is accelerated.
+        inertia: Inertia = choice(Inertia),
+    }
+
+    /// Gas accumulator. Give either `volume` or `gas_volume`.
+    Accumulator {
+        /// Gas volume at precharge, empty of oil.
+        volume: Option<N> = optional("m^3", POSITIVE),
+        /// Gas volume at rest under the design load.
+        gas_volume: Option<N> = optional("m^3", POSITIVE),
+        /// Precharge pressure at `precharge_temperature`.
+        precharge: N = pressure,
+        /// Temperature at which the precharge is stated.
+        precharge_temperature: N = number("K", Bounds::within(200.0, 450.0), 293.15),
+        /// Polytropic exponent of the gas: 1 isothermal, 1.4 adiabatic.
+        exponent: N = number("1", Bounds::within(1.0, 2.5), 1.4),
+        /// Resistance of the throttle before the accumulator.
+        throttle: N = number("Pa*s/m^3", NOT_NEGATIVE, 0.0),
+        /// Line between hub and accumulator.
+        line: Option<Line<N>> = maybe(Line),
+    }
+
+    /// Circuits that follow from a rule; each gets the same pressure, volume and accumulators.
+    Layout {
+        /// The rule.
+        kind: LayoutKind = must_choose(LayoutKind),
+        /// System pressure of every circuit.
+        pressure: N = pressure,
+        /// Oil volume at every hub beside that of chambers and lines.
+        volume: N = number("m^3", NOT_NEGATIVE, 0.0),
+        /// Ways from the chambers to the hubs.
+        ports: Ports<N> = filled(Ports),
+        /// Accumulators of every circuit.
+        accumulators: Named<Accumulator<N>> = named(Accumulator),
+    }
+
+    /// Ways from the chambers to the hubs, by axle and side of the piston.
+    Ports {
+        /// Front chambers that bump squeezes.
+        front_bump: Port<N> = filled(Port),
+        /// Front chambers that bump expands.
+        front_rebound: Port<N> = filled(Port),
+        /// Rear chambers that bump squeezes.
+        rear_bump: Port<N> = filled(Port),
+        /// Rear chambers that bump expands.
+        rear_rebound: Port<N> = filled(Port),
+    }
+
+    /// Place where a person sits.
+    Seat {
+        /// Distance ahead of the body's centre of gravity.
+        x: N = number("m", ANY),
+        /// Distance to the left of the centre line.
+        y: N = number("m", ANY),
+        /// Height of the seat surface above the ground.
+        height: N = number("m", NOT_NEGATIVE),
+    }
+}
+
+impl<N> Axle<N> {
+    /// The corner on one side, where the axle is given side by side.
+    pub fn side(&self, left: bool) -> Option<&CornerSpec<N>> {
+        self.both.as_ref().or(if left { self.left.as_ref() } else { self.right.as_ref() })
+    }
+}
+
+impl<N> Spec<N> {
+    /// The axle of a corner.
+    pub fn axle(&self, corner: Corner) -> &Axle<N> {
+        if corner.is_front() { &self.front } else { &self.rear }
+    }
+
+    /// A corner.
+    pub fn corner(&self, corner: Corner) -> Option<&CornerSpec<N>> {
+        self.axle(corner).side(corner.is_left())
+    }
+}

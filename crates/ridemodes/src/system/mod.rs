@@ -1,0 +1,328 @@
+//! The linear system: M, C and K as sums over a list of named elements.
+
+mod assembly;
+mod cache;
+mod canonical;
+mod coupling;
+mod state_space;
+
+use std::sync::Arc;
+
+use nalgebra::{DMatrix, Matrix4xX};
+use serde::{Deserialize, Serialize};
+
+use crate::axes::{Corner, MECHANICAL_NAMES, PerCorner};
+use crate::error::Result;
+use crate::numerics::Scalar;
+use crate::statics::{OperatingPoint, Positions};
+
+pub(crate) use assembly::assemble;
+pub(crate) use cache::Cache;
+pub(crate) use canonical::Canonical;
+pub(crate) use coupling::QuasiStatic;
+pub use state_space::StateSpace;
+
+/// What an element is.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Hash, Serialize, Deserialize)]
+#[serde(rename_all = "snake_case")]
+pub enum ElementKind {
+    /// Unsprung mass.
+    WheelMass,
+    /// Tyre.
+    Tyre,
+    /// Suspension spring.
+    Spring,
+    /// Anti-roll bar.
+    AntiRollBar,
+    /// Damper.
+    Damper,
+    /// Mount in series with a damper.
+    Mount,
+    /// Gas of an accumulator.
+    Gas,
+    /// Compressibility of oil.
+    Oil,
+    /// Throttle.
+    Throttle,
+    /// Line: friction and inertia of its oil.
+    Line,
+}
+
+impl ElementKind {
+    /// Whether the element belongs to the oil network.
+    pub fn is_hydraulic(self) -> bool {
+        matches!(self, Self::Gas | Self::Oil | Self::Throttle | Self::Line)
+    }
+
+    /// Whether the element acts between wheel and body, mechanically.
+    pub fn is_conventional(self) -> bool {
+        matches!(self, Self::Spring | Self::AntiRollBar | Self::Damper | Self::Mount)
+    }
+
+    /// The kind in words.
+    pub fn name(self) -> &'static str {
+        match self {
+            Self::WheelMass => "wheel mass",
+            Self::Tyre => "tyre",
+            Self::Spring => "spring",
+            Self::AntiRollBar => "anti-roll bar",
+            Self::Damper => "damper",
+            Self::Mount => "mount",
+            Self::Gas => "gas",
+            Self::Oil => "oil",
+            Self::Throttle => "throttle",
+            Self::Line => "line",
+        }
+    }
+}
+
+/// A named element: it adds m·g gᵀ, c·g gᵀ and k·g gᵀ to mass, damping and stiffness.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
+pub struct Element<T = f64> {
+    /// Name, e.g. `front_left.spring` or `circuits.left.accumulators.main.gas`.
+    pub name: Arc<str>,
+    /// What it is.
+    pub kind: ElementKind,
+    /// Its row g over the coordinates.
+    pub row: Vec<T>,
+    /// Mass or inertance m.
+    pub mass: T,
+    /// Damping or resistance c.
+    pub damping: T,
+    /// Stiffness k (of a store of volume: its share of 1/C).
+    pub stiffness: T,
+    /// Wheel whose road height moves its other end.
+    pub road: Option<Corner>,
+}
+
+/// A node of the oil with its pressure per coordinate.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
+pub(crate) struct PressureRow<T = f64> {
+    pub name: Arc<str>,
+    /// Inflow over the coordinates [m³ per coordinate].
+    pub inflow: Vec<T>,
+    /// Compliance [m³/Pa].
+    pub compliance: T,
+}
+
+/// Elements over the coordinates, in any scalar.
+pub(crate) struct Assembly<T> {
+    pub coordinates: Vec<Arc<str>>,
+    pub body: [[T; 3]; 3],
+    pub elements: Vec<Element<T>>,
+    pub pressures: Vec<PressureRow<T>>,
+    pub positions: Positions<T>,
+    /// Circulations: the coordinate that stands for each, and its shape over all coordinates.
+    pub circulations: Vec<(usize, Vec<f64>)>,
+}
+
+/// Mass, damping and stiffness over the coordinates, at an operating point.
+///
+/// Coordinates are deviations: body z [m], pitch and roll [rad], four wheels [m], then volumes moved
+/// through lines [m³] and inner coordinates, by name. All matrices are symmetric; the mass matrix
+/// may be singular.
+#[derive(Clone, Debug, Serialize, Deserialize, PartialEq)]
+pub struct LinearSystem {
+    pub(crate) point: OperatingPoint,
+    pub(crate) coordinates: Vec<String>,
+    pub(crate) elements: Vec<Element>,
+    pub(crate) pressures: Vec<PressureRow>,
+    pub(crate) positions: Positions<f64>,
+    pub(crate) mass: DMatrix<f64>,
+    pub(crate) damping: DMatrix<f64>,
+    pub(crate) stiffness: DMatrix<f64>,
+    pub(crate) circulations: Vec<(usize, Vec<f64>)>,
+    #[serde(skip)]
+    quasi_static: Cache<Result<QuasiStatic>>,
+    #[serde(skip)]
+    damped: Cache<Result<Canonical>>,
+}
+
+impl OperatingPoint {
+    /// The linear system about this operating point.
+    pub fn linear(&self) -> Result<LinearSystem> {
+        let vehicle = &self.vehicle;
+        let assembly: Assembly<f64> = assemble(vehicle.structure(), vehicle.numbers())?;
+        let mass = sum(&assembly, |element| element.mass, Some(&assembly.body));
+        let damping = sum(&assembly, |element| element.damping, None);
+        let stiffness = sum(&assembly, |element| element.stiffness, None);
+        Ok(LinearSystem {
+            point: self.clone(),
+            coordinates: assembly.coordinates.iter().map(ToString::to_string).collect(),
+            elements: assembly.elements,
+            pressures: assembly.pressures,
+            positions: assembly.positions,
+            mass,
+            damping,
+            stiffness,
+            circulations: assembly.circulations,
+            quasi_static: Cache::default(),
+            damped: Cache::default(),
+        })
+    }
+}
+
+// Σ s g gᵀ over the elements, with the body's mass as the one block.
+fn sum<T: Scalar>(
+    assembly: &Assembly<T>,
+    scalar: impl Fn(&Element<T>) -> T,
+    body: Option<&[[T; 3]; 3]>,
+) -> DMatrix<f64> {
+    let n = assembly.coordinates.len();
+    let mut matrix = DMatrix::zeros(n, n);
+    if let Some(body) = body {
+        for i in 0..3 {
+            for j in 0..3 {
+                matrix[(i, j)] = body[i][j].value();
+            }
+        }
+    }
+    for element in &assembly.elements {
+        let s = scalar(element).value();
+        if s == 0.0 {
+            continue;
+        }
+        for i in 0..n {
+            let g = element.row[i].value();
+            if g != 0.0 {
+                for j in 0..=i {
+                    matrix[(i, j)] += s * g * element.row[j].value();
+                }
+            }
+        }
+    }
+    matrix.fill_upper_triangle_with_lower_triangle();
+    matrix
+}
+
+impl LinearSystem {
+    /// The system with every line locked: volumes stay where they are.
+    pub(crate) fn locked(&self) -> Self {
+        let keep: Vec<usize> =
+            (0..self.coordinates.len()).filter(|&i| !self.coordinates[i].starts_with("circuits.")).collect();
+        let matrix = |full: &DMatrix<f64>| DMatrix::from_fn(keep.len(), keep.len(), |i, j| full[(keep[i], keep[j])]);
+        let row = |full: &Vec<f64>| keep.iter().map(|&i| full[i]).collect::<Vec<f64>>();
+        Self {
+            point: self.point.clone(),
+            coordinates: keep.iter().map(|&i| self.coordinates[i].clone()).collect(),
+            elements: self.elements.iter().map(|element| Element { row: row(&element.row), ..element.clone() }).collect(),
+            pressures: self
+                .pressures
+                .iter()
+                .map(|pressure| PressureRow { inflow: row(&pressure.inflow), ..pressure.clone() })
+                .collect(),
+            positions: self.positions,
+            mass: matrix(&self.mass),
+            damping: matrix(&self.damping),
+            stiffness: matrix(&self.stiffness),
+            circulations: Vec::new(),
+            quasi_static: Cache::default(),
+            damped: Cache::default(),
+        }
+    }
+
+    /// The operating point it is taken at.
+    pub fn point(&self) -> &OperatingPoint {
+        &self.point
+    }
+
+    /// Names of the coordinates: the seven mechanical ones, then volumes and inner ones by name.
+    pub fn coordinates(&self) -> &[String] {
+        &self.coordinates
+    }
+
+    /// Unit of each coordinate.
+    pub fn coordinate_units(&self) -> Vec<&'static str> {
+        let unit = |(index, name): (usize, &String)| match index {
+            1 | 2 => "rad",
+            0..7 => "m",
+            _ if name.starts_with("circuits.") => "m^3",
+            _ => "m",
+        };
+        self.coordinates.iter().enumerate().map(unit).collect()
+    }
+
+    /// The elements that the matrices are made of.
+    pub fn elements(&self) -> &[Element] {
+        &self.elements
+    }
+
+    /// Mass matrix M.
+    pub fn mass(&self) -> &DMatrix<f64> {
+        &self.mass
+    }
+
+    /// Damping matrix C.
+    pub fn damping(&self) -> &DMatrix<f64> {
+        &self.damping
+    }
+
+    /// Stiffness matrix K.
+    pub fn stiffness(&self) -> &DMatrix<f64> {
+        &self.stiffness
+    }
+
+    /// Force on the coordinates per road height under each wheel (n × 4) [N/m].
+    pub fn road_stiffness(&self) -> DMatrix<f64> {
+        self.road(|element| element.stiffness)
+    }
+
+    /// Force on the coordinates per road velocity under each wheel (n × 4) [N·s/m].
+    pub fn road_damping(&self) -> DMatrix<f64> {
+        self.road(|element| element.damping)
+    }
+
+    fn road(&self, scalar: impl Fn(&Element) -> f64) -> DMatrix<f64> {
+        let mut matrix = DMatrix::zeros(self.coordinates.len(), 4);
+        for element in &self.elements {
+            if let Some(corner) = element.road {
+                for (i, g) in element.row.iter().enumerate() {
+                    matrix[(i, corner.index())] += scalar(element) * g;
+                }
+            }
+        }
+        matrix
+    }
+
+    /// Suspension deflections over the coordinates, δ = L u (4 × n), bump positive.
+    pub fn deflection(&self) -> Matrix4xX<f64> {
+        let mut l = Matrix4xX::zeros(self.coordinates.len());
+        for i in 0..4 {
+            // δ = w − (z − xθ + yφ)
+            l[(i, 0)] = -1.0;
+            l[(i, 1)] = self.positions.x.0[i];
+            l[(i, 2)] = -self.positions.y.0[i];
+            l[(i, 3 + i)] = 1.0;
+        }
+        l
+    }
+
+    /// Names and absolute pressures of the nodes that have compliance are the rows of the pressure
+    /// output; these are their names.
+    pub fn pressure_names(&self) -> Vec<&str> {
+        self.pressures.iter().map(|row| &*row.name).collect()
+    }
+
+    /// Pressure rise of each compliant node per coordinate [Pa].
+    pub(crate) fn pressure(&self) -> DMatrix<f64> {
+        DMatrix::from_fn(self.pressures.len(), self.coordinates.len(), |i, j| {
+            self.pressures[i].inflow[j] / self.pressures[i].compliance
+        })
+    }
+
+    pub(crate) fn canonical(&self) -> Result<&Canonical> {
+        self.damped.get(|| Canonical::new(self, true)).as_ref().map_err(Clone::clone)
+    }
+
+    pub(crate) fn quasi_static(&self) -> Result<&QuasiStatic> {
+        self.quasi_static.get(|| QuasiStatic::new(self)).as_ref().map_err(Clone::clone)
+    }
+
+    pub(crate) fn positions(&self) -> (&PerCorner<f64>, &PerCorner<f64>) {
+        (&self.positions.x, &self.positions.y)
+    }
+}
+
+pub(crate) fn mechanical_names() -> impl Iterator<Item = Arc<str>> {
+    MECHANICAL_NAMES.into_iter().map(Arc::from)
+}
