@@ -1,1 +1,44 @@
-//! x
+//! Python binding of `ridemodes`: extract, detach, call one core function, wrap.
+
+mod arrays;
+mod convert;
+mod errors;
+mod linear;
+mod modes;
+mod motions;
+mod point;
+mod table;
+mod vehicle;
+
+/// Compiled core of ridemodes.
+#[pyo3::pymodule]
+mod _core {
+    use pyo3::prelude::*;
+
+    #[pymodule_export]
+    use crate::linear::{Element, LinearSystem, StateSpace};
+    #[pymodule_export]
+    use crate::modes::Modes;
+    #[pymodule_export]
+    use crate::motions::Motions;
+    #[pymodule_export]
+    use crate::point::OperatingPoint;
+    #[pymodule_export]
+    use crate::table::Table;
+    #[pymodule_export]
+    use crate::vehicle::{Parameter, Vehicle, example, examples, load, loads};
+
+    /// Version of the compiled core.
+    #[pymodule_export]
+    const VERSION: &str = env!("CARGO_PKG_VERSION");
+
+    /// What every result has to be read with.
+    #[pymodule_export]
+    const CAUTION: &str = ridemodes::CAUTION;
+
+    #[pymodule_init]
+    fn init(module: &Bound<'_, PyModule>) -> PyResult<()> {
+        // Loads NumPy's C interface here, so that an interrupt cannot meet it half loaded later.
+        crate::arrays::touch(module.py())
+    }
+}

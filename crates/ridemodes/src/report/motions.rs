@@ -6,7 +6,7 @@ use super::{Table, Tables, fixed, per_degree, percent};
 use crate::axes::{CORNER_NAMES, MOTION_NAMES};
 use crate::corner_motions::{MotionMatrix, Motions, RollStiffness};
 use crate::error::Result;
-use crate::system::LinearSystem;
+use crate::system::{LinearSystem, StateSpace};
 
 impl Motions {
     /// Everything about the four motions, for people.
@@ -125,5 +125,25 @@ impl LinearSystem {
             ]);
         }
         table.note("diagonals, SI; gravity moment of the leaned body left out (classical seven degrees of freedom)")
+    }
+}
+
+impl StateSpace {
+    /// The names of states, inputs and outputs.
+    pub fn table(&self) -> Table {
+        let mut table = Table::new(
+            format!("State space, {} states, {} inputs, {} outputs", self.states.len(), self.inputs.len(), self.outputs.len()),
+            &["states", "inputs", "outputs", "unit"],
+        );
+        let cell = |names: &[String], row: usize| names.get(row).cloned().unwrap_or_default();
+        for row in 0..self.states.len().max(self.inputs.len()).max(self.outputs.len()) {
+            table.row([
+                cell(&self.states, row),
+                cell(&self.inputs, row),
+                cell(&self.outputs, row),
+                cell(&self.output_units, row),
+            ]);
+        }
+        table
     }
 }

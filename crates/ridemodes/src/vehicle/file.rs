@@ -6,8 +6,8 @@ use serde::Serialize;
 use serde_json::Value;
 
 use super::Vehicle;
-use crate::error::{Error, Result};
-use crate::spec::{CURRENT_FORMAT, Spec, Tree, parse_json, parse_toml};
+use crate::error::{Error, Result, Violation};
+use crate::spec::{CURRENT_FORMAT, Spec, describe, parse_json, parse_toml};
 
 impl Vehicle {
     /// Reads TOML or JSON; JSON is what begins with `{`.
@@ -25,6 +25,14 @@ impl Vehicle {
         Self::from_tree(&parse_json(text)?)
     }
 
+    /// Builds a vehicle from the tables of its file.
+    pub fn from_value(value: &Value) -> Result<Self> {
+        match value {
+            Value::Object(tree) => Self::from_tree(tree),
+            other => Err(Error::invalid(Violation::new("", describe(other), "must be a table"))),
+        }
+    }
+
     /// Builds a vehicle from the data of its file.
     pub fn from_spec(spec: &Spec) -> Result<Self> {
         let value = serde_json::to_value(spec).map_err(|error| Error::Parse {
@@ -32,10 +40,7 @@ impl Vehicle {
             column: 0,
             message: error.to_string(),
         })?;
-        match without_nulls(value) {
-            Value::Object(tree) => Self::from_tree(&tree),
-            _ => Self::from_tree(&Tree::new()),
-        }
+        Self::from_value(&without_nulls(value))
     }
 
     /// Reads a `.toml` or `.json` file.

@@ -163,6 +163,11 @@ impl Vehicle {
         change::apply(self, &changes)
     }
 
+    /// As [`with_values`](Self::with_values), with the values as data of a file.
+    pub fn with_changes(&self, changes: serde_json::Map<String, Value>) -> Result<Self> {
+        change::apply(self, &changes.into_iter().collect::<Vec<_>>())
+    }
+
     /// The vehicle with a named setting of its file applied.
     pub fn with_setting(&self, name: &str) -> Result<Self> {
         let Some(set) = self.spec().settings.0.get(name) else {

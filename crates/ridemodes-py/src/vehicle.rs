@@ -1,0 +1,360 @@
+//! The vehicle.
+
+use std::path::PathBuf;
+
+use pyo3::prelude::*;
+use pyo3::types::PyMapping;
+use ridemodes::Vehicle as Core;
+use serde_json::Value;
+
+use crate::convert::{python, tree};
+use crate::errors::raise;
+use crate::point::OperatingPoint;
+use crate::table::Table;
+
+/// Reads a vehicle file.
+///
+/// Parameters
+/// ----------
+/// path : str or os.PathLike
+///     A `.toml` or `.json` file.
+///
+/// Returns
+/// -------
+/// Vehicle
+///
+/// Raises
+/// ------
+/// InvalidInput
+///     With every violation at once.
+/// ParseError
+///     Where the text is not TOML or JSON.
+/// OSError
+///     Where the file cannot be read.
+#[pyfunction]
+pub(crate) fn load(py: Python<'_>, path: PathBuf) -> PyResult<Vehicle> {
+    py.detach(|| Core::load(path)).map(Vehicle).map_err(raise)
+}
+
+/// Reads a vehicle from the text of a file, TOML or JSON.
+///
+/// Parameters
+/// ----------
+/// text : str
+///     JSON if it begins with ``{``, else TOML.
+///
+/// Returns
+/// -------
+/// Vehicle
+///
+/// Raises
+/// ------
+/// InvalidInput
+///     With every violation at once.
+/// ParseError
+///     Where the text is not TOML or JSON.
+#[pyfunction]
+pub(crate) fn loads(py: Python<'_>, text: &str) -> PyResult<Vehicle> {
+    py.detach(|| Core::from_text(text)).map(Vehicle).map_err(raise)
+}
+
+/// One of the example vehicles, all of them inventions.
+///
+/// Parameters
+/// ----------
+/// name : str
+///     One of `examples()`.
+///
+/// Returns
+/// -------
+/// Vehicle
+///
+/// Raises
+/// ------
+/// InvalidInput
+///     For a name that is not known, with the nearest ones.
+#[pyfunction]
+pub(crate) fn example(py: Python<'_>, name: &str) -> PyResult<Vehicle> {
+    py.detach(|| Core::example(name)).map(Vehicle).map_err(raise)
+}
+
+/// Names of the example vehicles.
+///
+/// Returns
+/// -------
+/// list of str
+#[pyfunction]
+pub(crate) fn examples() -> Vec<&'static str> {
+    Core::examples()
+}
+
+/// A number of a vehicle, as `Vehicle.parameters` lists it.
+#[pyclass(frozen, eq, module = "ridemodes")]
+#[derive(Clone, PartialEq)]
+pub(crate) struct Parameter {
+    /// Path, e.g. ``front.both.spring.rate``.
+    #[pyo3(get)]
+    path: String,
+    /// Value in SI.
+    #[pyo3(get)]
+    value: f64,
+    /// SI unit, ``1`` if none.
+    #[pyo3(get)]
+    unit: String,
+    /// What it means.
+    #[pyo3(get)]
+    meaning: String,
+    /// Least and largest value.
+    #[pyo3(get)]
+    bounds: (f64, f64),
+}
+
+#[pymethods]
+impl Parameter {
+    #[new]
+    fn new(path: String, value: f64, unit: String, meaning: String, bounds: (f64, f64)) -> Self {
+        Self { path, value, unit, meaning, bounds }
+    }
+
+    fn __repr__(&self) -> String {
+        format!("Parameter({} = {} [{}]: {})", self.path, self.value, self.unit, self.meaning)
+    }
+
+    #[pyo3(signature = () -> "tuple[type[Parameter], tuple[object, ...]]")]
+    fn __reduce__<'py>(slf: &Bound<'py, Self>) -> PyResult<Bound<'py, PyAny>> {
+        let own = slf.get();
+        let arguments = (&own.path, own.value, &own.unit, &own.meaning, own.bounds);
+        Ok((slf.get_type(), arguments).into_pyobject(slf.py())?.into_any())
+    }
+}
+
+/// A four-wheeled vehicle at its design condition.
+///
+/// Immutable; made by `load`, `loads`, `example` or `Vehicle.from_dict`. Two vehicles are equal when their
+/// files would be.
+#[pyclass(frozen, module = "ridemodes")]
+#[derive(Clone)]
+pub(crate) struct Vehicle(pub Core);
+
+#[pymethods]
+impl Vehicle {
+    /// Builds a vehicle from the data of its file.
+    ///
+    /// Parameters
+    /// ----------
+    /// data : mapping
+    ///     The tables of the file; numbers in SI, or text with a unit.
+    ///
+    /// Returns
+    /// -------
+    /// Vehicle
+    ///
+    /// Raises
+    /// ------
+    /// InvalidInput
+    ///     With every violation at once.
+    #[staticmethod]
+    #[pyo3(signature = (data: "collections.abc.Mapping[str, object]") -> "Vehicle")]
+    fn from_dict(py: Python<'_>, data: &Bound<'_, PyMapping>) -> PyResult<Self> {
+        let tree = tree(data, 0)?;
+        py.detach(|| Core::from_value(&tree)).map(Self).map_err(raise)
+    }
+
+    /// The data of the file, in SI.
+    ///
+    /// Returns
+    /// -------
+    /// dict
+    #[pyo3(signature = () -> "dict[str, object]")]
+    fn to_dict<'py>(&self, py: Python<'py>) -> PyResult<Bound<'py, PyAny>> {
+        python(py, &self.0.to_value())
+    }
+
+    /// The file as TOML, in SI.
+    ///
+    /// Returns
+    /// -------
+    /// str
+    fn to_toml(&self) -> String {
+        self.0.to_toml()
+    }
+
+    /// The file as JSON, in SI.
+    ///
+    /// Returns
+    /// -------
+    /// str
+    fn to_json(&self) -> String {
+        self.0.to_json()
+    }
+
+    /// Writes a file in SI; it is replaced as a whole or not at all.
+    ///
+    /// Parameters
+    /// ----------
+    /// path : str or os.PathLike
+    ///     JSON if it ends with ``.json``, else TOML.
+    ///
+    /// Raises
+    /// ------
+    /// OSError
+    ///     Where the file cannot be written.
+    fn save(&self, py: Python<'_>, path: PathBuf) -> PyResult<()> {
+        py.detach(|| self.0.save(path)).map_err(raise)
+    }
+
+    /// Name given in the file.
+    #[getter]
+    fn name(&self) -> Option<&str> {
+        self.0.name()
+    }
+
+    /// Description given in the file.
+    #[getter]
+    fn description(&self) -> Option<&str> {
+        self.0.description()
+    }
+
+    /// Names of the settings in the file.
+    #[getter]
+    fn settings(&self) -> Vec<&str> {
+        self.0.settings()
+    }
+
+    /// Names of the circuits.
+    #[getter]
+    fn circuits(&self) -> Vec<&str> {
+        self.0.circuits()
+    }
+
+    /// Every number once, as the file gives it, ordered by path.
+    ///
+    /// Returns
+    /// -------
+    /// list of Parameter
+    fn parameters(&self) -> Vec<Parameter> {
+        let wrap = |p: ridemodes::Parameter| Parameter {
+            path: p.path,
+            value: p.value,
+            unit: p.unit.to_owned(),
+            meaning: p.meaning.to_owned(),
+            bounds: (p.bounds.least, p.bounds.largest),
+        };
+        self.0.parameters().into_iter().map(wrap).collect()
+    }
+
+    /// The number at a path.
+    ///
+    /// One side of a pair, or one circuit of a layout, can be read too.
+    ///
+    /// Parameters
+    /// ----------
+    /// path : str
+    ///     E.g. ``front.left.tyre.rate``.
+    ///
+    /// Returns
+    /// -------
+    /// float
+    ///     In SI.
+    ///
+    /// Raises
+    /// ------
+    /// InvalidInput
+    ///     For an unknown path, with the nearest ones.
+    fn value(&self, path: &str) -> PyResult<f64> {
+        self.0.value(path).map_err(raise)
+    }
+
+    /// A vehicle with other numbers at some paths.
+    ///
+    /// Setting one side of a pair, or one circuit of a layout, splits it.
+    ///
+    /// Parameters
+    /// ----------
+    /// values : mapping of str to float or str
+    ///     By path: SI numbers, or text with a unit.
+    ///
+    /// Returns
+    /// -------
+    /// Vehicle
+    ///
+    /// Raises
+    /// ------
+    /// InvalidInput
+    ///     With every violation at once; unknown paths name the nearest ones.
+    #[pyo3(signature = (values: "collections.abc.Mapping[str, float | str]") -> "Vehicle")]
+    fn with_values(&self, py: Python<'_>, values: &Bound<'_, PyMapping>) -> PyResult<Self> {
+        let Value::Object(changes) = tree(values, 0)? else { return Ok(self.clone()) };
+        py.detach(|| self.0.with_changes(changes)).map(Self).map_err(raise)
+    }
+
+    /// The vehicle with a named setting of its file applied.
+    ///
+    /// Parameters
+    /// ----------
+    /// name : str
+    ///     One of `settings`.
+    ///
+    /// Returns
+    /// -------
+    /// Vehicle
+    ///
+    /// Raises
+    /// ------
+    /// InvalidInput
+    ///     For a name that is not known.
+    fn with_setting(&self, py: Python<'_>, name: &str) -> PyResult<Self> {
+        py.detach(|| self.0.with_setting(name)).map(Self).map_err(raise)
+    }
+
+    /// The operating point at the design condition.
+    ///
+    /// Returns
+    /// -------
+    /// OperatingPoint
+    fn settle(&self, py: Python<'_>) -> PyResult<OperatingPoint> {
+        py.detach(|| self.0.settle()).map(OperatingPoint::new).map_err(raise)
+    }
+
+    /// Every number with its path, value and unit, as a table.
+    ///
+    /// Returns
+    /// -------
+    /// Table
+    fn table(&self) -> Table {
+        self.0.table().into()
+    }
+
+    fn __str__(&self) -> String {
+        self.0.table().to_string()
+    }
+
+    fn __repr__(&self) -> String {
+        let circuits = match self.0.circuits()[..] {
+            [] => "no oil".to_owned(),
+            ref names => format!("circuits {}", names.join(", ")),
+        };
+        format!("<Vehicle {}: {} numbers, {circuits}>", self.0.name().unwrap_or("without name"), self.0.parameters().len())
+    }
+
+    fn _repr_html_(&self) -> String {
+        self.0.table().to_html()
+    }
+
+    fn __eq__(&self, other: &Bound<'_, PyAny>) -> bool {
+        other.cast::<Self>().is_ok_and(|other| self.0 == other.get().0)
+    }
+
+    fn __copy__(slf: Py<Self>) -> Py<Self> {
+        slf
+    }
+
+    fn __deepcopy__(slf: Py<Self>, _memo: &Bound<'_, PyAny>) -> Py<Self> {
+        slf
+    }
+
+    #[pyo3(signature = () -> "tuple[object, tuple[str]]")]
+    fn __reduce__<'py>(slf: &Bound<'py, Self>) -> PyResult<(Bound<'py, PyAny>, (String,))> {
+        Ok((slf.py().import("ridemodes")?.getattr("loads")?, (slf.get().0.to_json(),)))
+    }
+}

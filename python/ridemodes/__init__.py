@@ -1,0 +1,81 @@
+"""Coupled ride modes of a four-wheeled vehicle whose suspension corners share oil.
+
+A vehicle is read from a file, settled at its operating point, linearised and solved::
+
+    car = load("car.toml")
+    lin = car.settle().linear()
+    lin.modes(), lin.motions(), lin.coupling
+
+Everything is SI, pressures are absolute, axes are those of ISO 8855, and corners come in the order front
+left, front right, rear left, rear right.
+
+Results are for engineering judgement, not a release to the road: a vehicle with changed suspension is proven
+by test, under local rules and by qualified people. Pressurised accumulators can injure; charge and service
+them by their maker's instructions.
+"""
+
+from typing import TYPE_CHECKING, Any
+
+from ._core import (
+    CAUTION,
+    Element,
+    LinearSystem,
+    Modes,
+    Motions,
+    OperatingPoint,
+    Parameter,
+    StateSpace,
+    Table,
+    Vehicle,
+    example,
+    examples,
+    load,
+    loads,
+)
+from .errors import InvalidInput, NotConverged, ParseError, RidemodesError, Singular, Violation
+
+if TYPE_CHECKING:
+    from . import plot
+
+    __version__: str
+
+__all__ = [
+    "CAUTION",
+    "Element",
+    "InvalidInput",
+    "LinearSystem",
+    "Modes",
+    "Motions",
+    "NotConverged",
+    "OperatingPoint",
+    "Parameter",
+    "ParseError",
+    "RidemodesError",
+    "Singular",
+    "StateSpace",
+    "Table",
+    "Vehicle",
+    "Violation",
+    "example",
+    "examples",
+    "load",
+    "loads",
+    "plot",
+]
+
+
+def __getattr__(name: str) -> Any:
+    # Reading the metadata and importing matplotlib take longer than all the rest: only when asked for.
+    if name == "__version__":
+        from importlib.metadata import version
+
+        return version("ridemodes")
+    if name == "plot":
+        from importlib import import_module
+
+        return import_module(".plot", __name__)
+    raise AttributeError(f"module {__name__!r} has no attribute {name!r}")
+
+
+def __dir__() -> list[str]:
+    return sorted({*globals(), *__all__, "__version__"})
