@@ -59,6 +59,7 @@ bench: $(BUILT)
 stub: $(DEMO)
 	@echo 'Rewriting python/ridemodes/_core.pyi'
 	@$(DEVELOP) --generate-stubs >$(BUILD_LOG) 2>&1 || { cat $(BUILD_LOG) >&2; exit 1; }
+	@$(BIN)/python python/stub_imports.py python/ridemodes/_core.pyi
 	@touch $(BUILT)
 
 # For maintainers, with uv installed. `make lock LOCKFLAGS=--upgrade` takes the newest versions.

@@ -37,8 +37,8 @@ mod _core {
     const CAUTION: &str = ridemodes::CAUTION;
 
     #[pymodule_init]
-    fn init(module: &Bound<'_, PyModule>) -> PyResult<()> {
+    fn init(py: Python<'_>) -> PyResult<()> {
         // Loads NumPy's C interface here, so that an interrupt cannot meet it half loaded later.
-        crate::arrays::touch(module.py())
+        crate::arrays::touch(py)
     }
 }

@@ -4,7 +4,12 @@ use crate::error::{Error, Result, Violation};
 use crate::spec::nearest;
 use crate::vehicle::Vehicle;
 
-const EXAMPLES: [(&str, &str); 1] = [("roadster", include_str!("../data/roadster.toml"))];
+const EXAMPLES: [(&str, &str); 4] = [
+    ("delivery_van", include_str!("../data/delivery_van.toml")),
+    ("forest_truck", include_str!("../data/forest_truck.toml")),
+    ("roadster", include_str!("../data/roadster.toml")),
+    ("roadster_without_oil", include_str!("../data/roadster_without_oil.toml")),
+];
 
 impl Vehicle {
     /// Names of the example vehicles.

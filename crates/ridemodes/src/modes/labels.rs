@@ -28,23 +28,38 @@ pub(super) fn undamped(system: &LinearSystem, modes: &[RawMode]) -> Labels {
     for (motion, &mode) in owner.iter().enumerate() {
         labels.names[mode] = SHARE_NAMES[motion].to_owned();
     }
-    for (a, &mode_a) in owner.iter().enumerate() {
-        for (b, &mode_b) in owner.iter().enumerate().skip(a + 1) {
-            let cost = share[mode_a][a] + share[mode_b][b] - share[mode_a][b] - share[mode_b][a];
-            if cost < NEAR_TIE {
-                labels.unclear[mode_a] = true;
-                labels.unclear[mode_b] = true;
-            }
-        }
-    }
+    flag_near_ties(&mut labels, &share);
     number(&mut labels.names, |_| "oil");
     labels
 }
 
-/// Damped modes take the labels of the undamped modes they resemble in shape. A motion with no
+// Flags two modes that could exchange their labels at little cost.
+fn flag_near_ties(labels: &mut Labels, share: &[[f64; 8]]) {
+    let motion = |name: &String| SHARE_NAMES[..7].iter().position(|known| known == name);
+    let labelled: Vec<(usize, usize)> =
+        labels.names.iter().enumerate().filter_map(|(mode, name)| Some((mode, motion(name)?))).collect();
+    for (place, &(a, label_a)) in labelled.iter().enumerate() {
+        for &(b, label_b) in &labelled[place + 1..] {
+            let cost = share[a][label_a] + share[b][label_b] - share[a][label_b] - share[b][label_a];
+            if label_a != label_b && cost < NEAR_TIE {
+                labels.unclear[a] = true;
+                labels.unclear[b] = true;
+            }
+        }
+    }
+}
+
+/// Damped modes take the labels of the undamped modes they resemble, by shape and, where damping mixes
+/// modes of nearly equal frequency anew, by their own share in the labelled motion. A motion with no
 /// oscillating mode left is overdamped: two real poles carry its label.
 pub(super) fn damped(system: &LinearSystem, modes: &[RawMode], reference: &[RawMode], labels: &Labels) -> Labels {
-    let likeness = |mode: usize, other: usize| assurance(system, &modes[mode].shape, &reference[other].shape);
+    let share: Vec<[f64; 8]> = modes.iter().map(|mode| shares::kinetic(system, &mode.shape)).collect();
+    let motion: Vec<Option<usize>> =
+        labels.names.iter().map(|name| SHARE_NAMES[..7].iter().position(|known| known == name)).collect();
+    let likeness = |mode: usize, other: usize| {
+        let own = motion[other].map_or(share[mode][7], |motion| share[mode][motion]);
+        (assurance(system, &modes[mode].shape, &reference[other].shape) + 2.0 * own) / 3.0
+    };
     let (oscillating, real): (Vec<usize>, Vec<usize>) = (0..modes.len()).partition(|&i| modes[i].pole.im > 0.0);
     let mut result = Labels { names: vec![String::new(); modes.len()], unclear: vec![false; modes.len()] };
     let mut left: Vec<usize> = (0..reference.len()).collect();
@@ -52,7 +67,6 @@ pub(super) fn damped(system: &LinearSystem, modes: &[RawMode], reference: &[RawM
         if !labels.names[other].starts_with("oil") {
             result.names[mode].clone_from(&labels.names[other]);
         }
-        result.unclear[mode] = labels.unclear[other];
         left.retain(|&i| i != other);
     };
     if oscillating.len() <= reference.len() {
@@ -89,6 +103,7 @@ pub(super) fn damped(system: &LinearSystem, modes: &[RawMode], reference: &[RawM
             free.retain(|&i| i != first && i != second);
         }
     }
+    flag_near_ties(&mut result, &share);
     number(&mut result.names, |i| if modes[i].pole.im > 0.0 { "oil" } else { "relaxation" });
     result
 }

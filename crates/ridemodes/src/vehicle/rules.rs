@@ -18,10 +18,10 @@ pub(crate) fn chamber(key: &str) -> Option<(Corner, bool)> {
     Some((Corner::from_name(corner)?, bump))
 }
 
-/// Rules on groups: pairs, layouts, cylinders.
+/// Rules on groups of the raw file: pairs, layouts, cylinders.
 pub(super) fn groups(tree: &Tree) -> Vec<Violation> {
     let mut violations = Vec::new();
-    for axle in ["front", "rear"] {
+    for axle in ["front", "rear"].into_iter().filter(|axle| tree.get(*axle).is_some_and(Value::is_object)) {
         let has = |side: &str| tree.get(axle).and_then(|axle| axle.get(side)).is_some();
         match (has("both"), has("left"), has("right")) {
             (true, false, false) | (false, true, true) => {}

@@ -105,7 +105,7 @@ impl Vehicle {
         let mut tree = reading.tree;
         let mut violations = reading.violations;
         settings_to_si(&mut tree, &reading.parameters, &readable, atmosphere, &mut violations);
-        violations.extend(rules::groups(&tree));
+        violations.extend(rules::groups(raw));
         let spec: Spec<Slot> = match serde_json::from_value(Value::Object(expand(&tree))) {
             Ok(spec) => spec,
             Err(error) => {

@@ -1,0 +1,22 @@
+//! Integration tests of the public interface, in one binary.
+//!
+//! What they compare with is worked out here on its own (`support`, `oil`) or published; the source stands
+//! beside each check, with "from memory" where the text itself was not at hand. Reference cases are in
+//! `cases/*.toml`; their format is described in `cases.rs`.
+
+mod cases;
+mod coupling;
+mod elements;
+mod extremes;
+mod faults;
+mod file;
+mod invariants;
+mod matrices;
+mod motions;
+mod oil;
+mod paths;
+mod poles;
+mod random;
+mod shares;
+mod support;
+mod text;

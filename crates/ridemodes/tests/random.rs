@@ -1,0 +1,230 @@
+//! Random cars, all of them valid.
+
+use proptest::collection::vec;
+use proptest::prelude::*;
+use serde_json::{Value, json};
+
+/// What a random car may hold.
+#[derive(Clone, Copy, Debug)]
+pub struct Wanted {
+    /// Left and right alike, no product of inertia.
+    pub symmetric: bool,
+    /// Oil: never, or in every car.
+    pub oil: bool,
+    /// Every node of the oil has compliance of its own.
+    pub compressible: bool,
+    /// Lines may have inertance.
+    pub inertance: bool,
+}
+
+pub const ANY: Wanted = Wanted { symmetric: false, oil: true, compressible: false, inertance: true };
+pub const COMPRESSIBLE: Wanted = Wanted { compressible: true, ..ANY };
+pub const SYMMETRIC: Wanted = Wanted { symmetric: true, ..ANY };
+pub const DRY: Wanted = Wanted { oil: false, ..ANY };
+
+const KINDS: [&str; 6] = ["roll", "pitch", "diagonal", "heave", "axle_roll", "one by one"];
+
+/// Cars as data in SI.
+pub fn cars(wanted: Wanted) -> impl Strategy<Value = Value> {
+    vec(0.0..1.0, 150).prop_map(move |rolls| Dice { rolls, next: 0 }.car(wanted))
+}
+
+// Numbers between 0 and 1, taken one after the other.
+struct Dice {
+    rolls: Vec<f64>,
+    next: usize,
+}
+
+impl Dice {
+    fn roll(&mut self) -> f64 {
+        self.next += 1;
+        self.rolls[(self.next - 1) % self.rolls.len()]
+    }
+
+    fn within(&mut self, least: f64, most: f64) -> f64 {
+        least + (most - least) * self.roll()
+    }
+
+    // Even over orders of magnitude.
+    fn scale(&mut self, least: f64, most: f64) -> f64 {
+        least * (most / least).powf(self.roll())
+    }
+
+    fn chance(&mut self, probability: f64) -> bool {
+        self.roll() < probability
+    }
+
+    fn pick(&mut self, count: usize) -> usize {
+        ((self.roll() * count as f64) as usize).min(count - 1)
+    }
+
+    fn car(mut self, wanted: Wanted) -> Value {
+        let (roll, pitch) = (self.within(250.0, 700.0), self.within(900.0, 2500.0));
+        let (front, rear) = (self.axle(wanted), self.axle(wanted));
+        let mut car = json!({
+            "body": {
+                "mass": self.within(700.0, 2000.0), "roll_inertia": roll, "pitch_inertia": pitch, "cg_height": 0.5,
+            },
+            "front": front, "rear": rear,
+        });
+        if !wanted.symmetric {
+            car["body"]["cg_offset"] = json!(self.within(-0.1, 0.1));
+            car["body"]["roll_pitch_product"] = json!(self.within(-0.2, 0.2) * (roll * pitch).sqrt());
+        }
+        if wanted.oil {
+            car["temperature"] = json!(self.within(263.0, 343.0));
+            car["oil"] = self.oil(wanted);
+            self.circuits(&mut car, wanted);
+        }
+        car
+    }
+
+    fn axle(&mut self, wanted: Wanted) -> Value {
+        let mut axle = json!({ "distance": self.within(1.0, 1.7), "track": self.within(1.3, 1.8) });
+        if self.chance(0.5) {
+            axle["anti_roll_bar"] = json!({ "rate": self.scale(1e3, 3e4) });
+        }
+        if wanted.symmetric || self.chance(0.3) {
+            axle["both"] = self.corner(wanted);
+        } else {
+            axle["left"] = self.corner(wanted);
+            axle["right"] = self.corner(wanted);
+        }
+        axle
+    }
+
+    fn corner(&mut self, wanted: Wanted) -> Value {
+        let mut corner = json!({
+            "unsprung_mass": self.within(25.0, 70.0),
+            "tyre": { "rate": self.within(150e3, 320e3), "damping": self.within(0.0, 400.0) },
+            "spring": { "rate": self.scale(8e3, 8e4), "motion_ratio": self.within(0.6, 1.1) },
+            "damper": { "coefficient": self.scale(300.0, 5e3), "motion_ratio": self.within(0.6, 1.1) },
+        });
+        if self.chance(0.3) {
+            corner["damper"]["mount_rate"] = json!(self.scale(1e5, 2e6));
+        }
+        if wanted.oil {
+            let bore = self.within(0.02, 0.045);
+            let stroke = if wanted.compressible || self.chance(0.5) { self.within(0.1, 0.25) } else { 0.0 };
+            corner["cylinder"] = json!({
+                "bore": bore, "rod": bore * self.within(0.3, 0.8), "motion_ratio": self.within(0.5, 1.1), "stroke": stroke,
+            });
+        }
+        corner
+    }
+
+    fn oil(&mut self, wanted: Wanted) -> Value {
+        let cold = self.scale(1e-5, 6e-5);
+        let mut oil = json!({
+            "density": self.within(800.0, 900.0), "kinematic_viscosity": cold,
+            "kinematic_viscosity_hot": cold * self.within(0.15, 0.3), "air_fraction": 0.0,
+        });
+        if wanted.compressible || self.chance(0.6) {
+            oil["bulk_modulus"] = json!(self.scale(0.8e9, 2e9));
+        }
+        if self.chance(0.4) {
+            oil["air_fraction"] = json!(self.within(0.001, 0.02));
+        }
+        oil
+    }
+
+    // A layout by rule, or circuits one by one: each axle's bump chambers, each side's rebound chambers.
+    fn circuits(&mut self, car: &mut Value, wanted: Wanted) {
+        let kind = KINDS[self.pick(KINDS.len())];
+        if kind != "one by one" {
+            let ports: serde_json::Map<String, Value> = ["front_bump", "front_rebound", "rear_bump", "rear_rebound"]
+                .map(|port| (port.to_owned(), self.way(wanted)))
+                .into_iter()
+                .collect();
+            car["layout"] = self.hub(wanted);
+            car["layout"]["kind"] = json!(kind);
+            car["layout"]["ports"] = Value::Object(ports);
+            return;
+        }
+        for (name, chambers) in [
+            ("front", ["front_left_bump", "front_right_bump"]),
+            ("left", ["front_left_rebound", "rear_left_rebound"]),
+            ("rear", ["rear_left_bump", "rear_right_bump"]),
+            ("right", ["front_right_rebound", "rear_right_rebound"]),
+        ] {
+            let mut circuit = match (name, wanted.symmetric) {
+                ("right", true) => car["circuits"]["left"].clone(),
+                _ => self.hub(wanted),
+            };
+            let way = self.way(wanted);
+            let ways = if wanted.symmetric {
+                // Like chambers left and right have like ways.
+                match name {
+                    "right" => {
+                        let left = &car["circuits"]["left"]["chambers"];
+                        [left["front_left_rebound"].clone(), left["rear_left_rebound"].clone()]
+                    }
+                    "left" => [way, self.way(wanted)],
+                    _ => [way.clone(), way],
+                }
+            } else {
+                [way, self.way(wanted)]
+            };
+            circuit["chambers"] = chambers.map(str::to_owned).into_iter().zip(ways).collect();
+            car["circuits"][name] = circuit;
+        }
+    }
+
+    fn hub(&mut self, wanted: Wanted) -> Value {
+        let pressure = self.scale(15e5, 120e5);
+        let mut accumulators = serde_json::Map::new();
+        for name in ["first", "second"].iter().take(1 + self.pick(2)) {
+            let mut accumulator = self.way(wanted);
+            // Charged at 293 K, still below the system pressure at 343 K.
+            accumulator["precharge"] = json!(pressure * self.within(0.3, 0.8));
+            accumulator["exponent"] = json!(self.within(1.0, 1.7));
+            let given = if self.chance(0.5) { "volume" } else { "gas_volume" };
+            accumulator[given] = json!(self.scale(0.1e-3, 1e-3));
+            accumulators.insert((*name).to_owned(), accumulator);
+        }
+        let volume = if wanted.compressible || self.chance(0.5) { self.within(20e-6, 100e-6) } else { 0.0 };
+        json!({ "pressure": pressure, "volume": volume, "accumulators": accumulators })
+    }
+
+    // Nothing, a throttle, a line, or both.
+    fn way(&mut self, wanted: Wanted) -> Value {
+        let mut way = json!({});
+        let choice = self.pick(4);
+        if choice % 2 == 1 {
+            way["throttle"] = json!(self.scale(1e7, 3e9));
+        }
+        if choice >= 2 {
+            let inertia = if wanted.inertance { ["plug", "developed", "none"][self.pick(3)] } else { "none" };
+            way["line"] = json!({ "length": self.within(0.2, 3.0), "bore": self.within(0.006, 0.014), "inertia": inertia });
+        }
+        way
+    }
+}
+
+/// The car seen in a mirror: left and right exchanged.
+pub fn mirrored(car: &Value) -> Value {
+    let mut other = car.clone();
+    for key in ["cg_offset", "roll_pitch_product"] {
+        let value = car["body"].get(key).and_then(Value::as_f64).unwrap_or(0.0);
+        other["body"][key] = json!(-value);
+    }
+    for axle in ["front", "rear"] {
+        if let (Some(left), Some(right)) = (car[axle].get("left"), car[axle].get("right")) {
+            other[axle]["left"] = right.clone();
+            other[axle]["right"] = left.clone();
+        }
+    }
+    if let Some(circuits) = car.get("circuits").and_then(Value::as_object) {
+        for (name, circuit) in circuits {
+            let mut circuit = circuit.clone();
+            let chambers = circuit["chambers"].as_object().unwrap();
+            circuit["chambers"] = chambers.iter().map(|(key, way)| (swapped(key), way.clone())).collect();
+            other["circuits"][swapped(name)] = circuit;
+        }
+    }
+    other
+}
+
+fn swapped(name: &str) -> String {
+    if name.contains("left") { name.replace("left", "right") } else { name.replace("right", "left") }
+}

@@ -1,0 +1,1035 @@
+"""
+Compiled core of ridemodes.
+"""
+
+import collections.abc
+import numpy
+import numpy.typing
+import pandas
+import xarray
+from collections.abc import Iterator
+from numpy import bool_, complex128, float64, str_
+from numpy.typing import NDArray
+from os import PathLike
+from typing import Any, Final, SupportsFloat, SupportsIndex, final
+
+__all__ = ["CAUTION", "VERSION", "Element", "LinearSystem", "Modes", "Motions", "OperatingPoint", "Parameter", "StateSpace", "Table", "Vehicle", "example", "examples", "load", "loads"]
+
+CAUTION: Final[str]
+"""
+What every result has to be read with.
+"""
+
+VERSION: Final[str]
+"""
+Version of the compiled core.
+"""
+
+@final
+class Element:
+    """
+    A named element: it adds ``mass``, ``damping`` and ``stiffness`` times ``outer(row, row)`` to the matrices.
+    """
+    def __eq__(self, other: object, /) -> bool: ...
+    def __reduce__(self, /) -> "tuple[object, tuple[bytes]]": ...
+    def __repr__(self, /) -> str: ...
+    @staticmethod
+    def _restore(data: bytes) -> Element: ...
+    @property
+    def damping(self, /) -> float:
+        """
+        Damping or resistance.
+        """
+    @property
+    def kind(self, /) -> str:
+        """
+        What it is, e.g. ``spring`` or ``gas``.
+        """
+    @property
+    def mass(self, /) -> float:
+        """
+        Mass or inertance.
+        """
+    @property
+    def name(self, /) -> str:
+        """
+        Name, e.g. ``front_left.spring``.
+        """
+    @property
+    def road(self, /) -> str | None:
+        """
+        Wheel whose road height moves its other end.
+        """
+    @property
+    def row(self, /) -> NDArray[float64]:
+        """
+        Row over the coordinates.
+        """
+    @property
+    def stiffness(self, /) -> float:
+        """
+        Stiffness; of a store of volume its share of one over the node's compliance.
+        """
+
+@final
+class LinearSystem:
+    """
+    Mass, damping and stiffness over the coordinates, at an operating point.
+
+    Coordinates are deviations: body z [m], pitch and roll [rad], four wheels [m], then volumes moved through
+    lines [m^3] and inner coordinates, by name.
+    """
+    def __copy__(self, /) -> LinearSystem: ...
+    def __deepcopy__(self, /, _memo: Any) -> LinearSystem: ...
+    def __eq__(self, other: object, /) -> bool: ...
+    def __reduce__(self, /) -> "tuple[object, tuple[bytes]]": ...
+    def __repr__(self, /) -> str: ...
+    def __str__(self, /) -> str: ...
+    def _repr_html_(self, /) -> str: ...
+    @staticmethod
+    def _restore(data: bytes) -> LinearSystem: ...
+    @property
+    def coordinate_units(self, /) -> list[str]:
+        """
+        Units of the coordinates.
+        """
+    @property
+    def coordinates(self, /) -> list[str]:
+        """
+        Names of the coordinates.
+        """
+    @property
+    def coupling(self, /) -> NDArray[float64]:
+        """
+        Quasi-static coupling of the oil at the wheels, 4 x 4 [N/m]: force against bump per bump.
+        """
+    def coupling_table(self, /) -> Table:
+        """
+        The coupling of the oil as a table.
+
+        Returns
+        -------
+        Table
+        """
+    @property
+    def damping(self, /) -> NDArray[float64]:
+        """
+        Damping matrix, n x n.
+        """
+    @property
+    def deflection(self, /) -> NDArray[float64]:
+        """
+        Suspension deflections over the coordinates, 4 x n, bump positive.
+        """
+    def dynamic_coupling(self, /, frequency: "numpy.typing.ArrayLike") -> "numpy.typing.NDArray[numpy.complex128]":
+        """
+        Dynamic coupling of the oil at the wheels.
+
+        Parameters
+        ----------
+        frequency : float or array_like
+            Frequencies [Hz]; 0 gives `coupling`.
+
+        Returns
+        -------
+        numpy.ndarray
+            Complex, 4 x 4 x frequencies [N/m]: stiffness as real part, damping times angular frequency as
+            imaginary part.
+
+        Raises
+        ------
+        Singular
+            At an undamped resonance of the oil.
+        """
+    @property
+    def elements(self, /) -> list[Element]:
+        """
+        The elements that the matrices are made of, the body's mass apart.
+        """
+    @property
+    def mass(self, /) -> NDArray[float64]:
+        """
+        Mass matrix, n x n.
+        """
+    def modes(self, /, *, damped: bool = True, locked: bool = False) -> Modes:
+        """
+        The modes.
+
+        Parameters
+        ----------
+        damped : bool
+            With all damping and every state; otherwise without damping, the oil flowing freely.
+        locked : bool
+            Without damping: with no flow in any line.
+
+        Returns
+        -------
+        Modes
+
+        Raises
+        ------
+        Singular
+            Where a motion is free; the error names it.
+        """
+    def motions(self, /) -> Motions:
+        """
+        Stiffness and damping in heave, pitch, roll and warp.
+
+        Returns
+        -------
+        Motions
+
+        Raises
+        ------
+        Singular
+            Where nothing holds the body.
+        """
+    @property
+    def point(self, /) -> OperatingPoint:
+        """
+        The operating point it is taken at.
+        """
+    @property
+    def road_damping(self, /) -> NDArray[float64]:
+        """
+        Force on the coordinates per road velocity under each wheel, n x 4.
+        """
+    @property
+    def road_stiffness(self, /) -> NDArray[float64]:
+        """
+        Force on the coordinates per road height under each wheel, n x 4.
+        """
+    def state_space(self, /) -> StateSpace:
+        """
+        The system as state space, for `scipy.signal` or python-control.
+
+        Returns
+        -------
+        StateSpace
+            Unpacks to ``A, B, C, D``.
+        """
+    @property
+    def stiffness(self, /) -> NDArray[float64]:
+        """
+        Stiffness matrix, n x n.
+        """
+    def table(self, /) -> Table:
+        """
+        Coordinates and coupling as a table.
+
+        Returns
+        -------
+        Table
+        """
+    def to_xarray(self, /) -> "xarray.Dataset":
+        """
+        The matrices as an `xarray.Dataset`.
+
+        Returns
+        -------
+        xarray.Dataset
+        """
+
+@final
+class Modes:
+    """
+    Modes of a linear system, one row for each pole in the closed upper half-plane, by ascending frequency.
+    """
+    def __copy__(self, /) -> Modes: ...
+    def __deepcopy__(self, /, _memo: Any) -> Modes: ...
+    def __eq__(self, other: object, /) -> bool: ...
+    def __len__(self, /) -> int: ...
+    def __reduce__(self, /) -> "tuple[object, tuple[bytes]]": ...
+    def __repr__(self, /) -> str: ...
+    def __str__(self, /) -> str: ...
+    def _repr_html_(self, /) -> str: ...
+    @staticmethod
+    def _restore(data: bytes) -> Modes: ...
+    @property
+    def coordinates(self, /) -> list[str]:
+        """
+        Names of the coordinates, the columns of `shape`.
+        """
+    @property
+    def damping_ratio(self, /) -> NDArray[float64]:
+        """
+        Damping ratios [1].
+        """
+    @property
+    def dissipation_share(self, /) -> NDArray[float64]:
+        """
+        Shares of dissipation, modes x elements; zero without damping.
+        """
+    @property
+    def elements(self, /) -> list[str]:
+        """
+        Names of the elements, the columns of `strain_share` and `dissipation_share`.
+        """
+    def energy_table(self, /, row: "int | str") -> "Table":
+        """
+        Where a mode's strain energy and dissipation are, as a table, the largest first.
+
+        Parameters
+        ----------
+        row : int or str
+            Row, or label (of an overdamped motion its slower pole).
+
+        Returns
+        -------
+        Table
+
+        Raises
+        ------
+        IndexError
+            For a row that is not there.
+        KeyError
+            For a label that is not there.
+        """
+    @property
+    def frequency(self, /) -> NDArray[float64]:
+        """
+        Natural frequencies, the pole's magnitude over 2 pi [Hz].
+        """
+    @property
+    def kind(self, /) -> str:
+        """
+        In words, whether the modes are damped and what the oil does.
+        """
+    @property
+    def label(self, /) -> NDArray[str_]:
+        """
+        Labels: seven mechanical motions, ``oil 1`` and so on, ``relaxation 1`` and so on.
+
+        A pair of poles gone real carries its label twice.
+        """
+    @property
+    def motion_share(self, /) -> NDArray[float64]:
+        """
+        Shares of kinetic energy in heave, pitch, roll, warp and the oil, modes x 5; rows sum to 1.
+        """
+    @property
+    def motion_share_names(self, /) -> list[str]:
+        """
+        Names of the columns of `motion_share`.
+        """
+    @property
+    def pole(self, /) -> NDArray[complex128]:
+        """
+        Poles [rad/s].
+        """
+    @property
+    def positions(self, /) -> NDArray[float64]:
+        """
+        Positions of the corners from the centre of gravity, x forward and y left, 2 x 4 [m].
+        """
+    def rows(self, /, label: str) -> list[int]:
+        """
+        Rows that carry a label, ascending in frequency.
+
+        Parameters
+        ----------
+        label : str
+            E.g. ``body roll``.
+
+        Returns
+        -------
+        list of int
+            One row, two of an overdamped motion, none for an unknown label.
+        """
+    @property
+    def shape(self, /) -> NDArray[complex128]:
+        """
+        Shapes, modes x coordinates; the component of most kinetic energy is 1.
+        """
+    @property
+    def share(self, /) -> NDArray[float64]:
+        """
+        Shares of kinetic energy, modes x 8 in the order of `share_names`; rows sum to 1.
+        """
+    @property
+    def share_names(self, /) -> list[str]:
+        """
+        Names of the columns of `share`.
+        """
+    @property
+    def strain_share(self, /) -> NDArray[float64]:
+        """
+        Shares of strain energy, modes x elements.
+        """
+    def table(self, /) -> Table:
+        """
+        The modes as a table for people: the seven mechanical ones first, then oil, then relaxation.
+
+        Returns
+        -------
+        Table
+        """
+    def to_dataframe(self, /) -> "pandas.DataFrame":
+        """
+        Frequencies, damping and shares as a `pandas.DataFrame`.
+
+        Returns
+        -------
+        pandas.DataFrame
+        """
+    def to_xarray(self, /) -> "xarray.Dataset":
+        """
+        The modes as an `xarray.Dataset` with units.
+
+        Returns
+        -------
+        xarray.Dataset
+        """
+    @property
+    def unclear(self, /) -> NDArray[bool_]:
+        """
+        Whether the label is a near tie with another mode's.
+        """
+
+@final
+class Motions:
+    """
+    The suspension in heave, pitch, roll and warp, at vanishing frequency.
+
+    Matrices are 4 x 4 in the order of `names`; of the corners in the order front left, front right, rear
+    left, rear right.
+    """
+    def __copy__(self, /) -> Motions: ...
+    def __deepcopy__(self, /, _memo: Any) -> Motions: ...
+    def __eq__(self, other: object, /) -> bool: ...
+    def __reduce__(self, /) -> "tuple[object, tuple[bytes]]": ...
+    def __repr__(self, /) -> str: ...
+    def __str__(self, /) -> str: ...
+    def _repr_html_(self, /) -> str: ...
+    @staticmethod
+    def _restore(data: bytes) -> Motions: ...
+    @property
+    def at_ground(self, /) -> NDArray[float64]:
+        """
+        Stiffness at the ground with the body free and tyres in series, 4 x 4 [N/m].
+        """
+    @property
+    def at_wheels(self, /) -> NDArray[float64]:
+        """
+        Stiffness of the suspension at the wheels, 4 x 4 [N/m]; column i is what raising wheel i meets.
+        """
+    @property
+    def bounce_centre(self, /) -> float:
+        """
+        Where the body turns in its bounce mode, ahead of the centre of gravity [m]; infinite for pure bounce.
+        """
+    @property
+    def damping(self, /) -> NDArray[float64]:
+        """
+        Damping of dampers and oil together, 4 x 4 [N*s/m].
+        """
+    @property
+    def damping_at_wheels(self, /) -> NDArray[float64]:
+        """
+        Damping of the suspension at the wheels, 4 x 4 [N*s/m].
+        """
+    @property
+    def damping_conventional(self, /) -> NDArray[float64]:
+        """
+        Damping of the dampers, 4 x 4 [N*s/m].
+        """
+    @property
+    def damping_cross(self, /) -> NDArray[float64]:
+        """
+        Off-diagonals of the damping over the root of the diagonals, 4 x 4 [1]; diagonal zero.
+        """
+    @property
+    def damping_oil(self, /) -> NDArray[float64]:
+        """
+        Damping of throttles and lines, 4 x 4 [N*s/m].
+        """
+    @property
+    def element_damping(self, /) -> NDArray[float64]:
+        """
+        Damping each element adds to the motions, elements x 4 [N*s/m].
+        """
+    @property
+    def element_stiffness(self, /) -> NDArray[float64]:
+        """
+        Stiffness each element adds to the motions, elements x 4 [N/m].
+        """
+    @property
+    def elements(self, /) -> list[str]:
+        """
+        Names of the elements that hold or damp a motion.
+        """
+    @property
+    def names(self, /) -> list[str]:
+        """
+        Names of the motions: heave, pitch, roll, warp.
+        """
+    @property
+    def pitch_centre(self, /) -> float:
+        """
+        Where the body turns in its pitch mode, ahead of the centre of gravity [m].
+        """
+    @property
+    def ride_frequency(self, /) -> tuple[float, float]:
+        """
+        Undamped frequency of front and rear on their axles alone, tyres in series [Hz].
+        """
+    @property
+    def roll_stiffness(self, /) -> NDArray[float64]:
+        """
+        Moment per angle of body roll at the front axle, the rear axle and in total [N*m/rad].
+        """
+    @property
+    def roll_stiffness_conventional(self, /) -> NDArray[float64]:
+        """
+        The conventional part of `roll_stiffness` [N*m/rad].
+        """
+    @property
+    def roll_stiffness_oil(self, /) -> NDArray[float64]:
+        """
+        The oil's part of `roll_stiffness` [N*m/rad].
+        """
+    @property
+    def stiffness(self, /) -> NDArray[float64]:
+        """
+        Stiffness of conventional part and oil together, 4 x 4 [N/m].
+        """
+    @property
+    def stiffness_conventional(self, /) -> NDArray[float64]:
+        """
+        Stiffness of springs and bars, 4 x 4 [N/m].
+        """
+    @property
+    def stiffness_cross(self, /) -> NDArray[float64]:
+        """
+        Off-diagonals of the stiffness over the root of the diagonals, 4 x 4 [1]; diagonal zero.
+        """
+    @property
+    def stiffness_oil(self, /) -> NDArray[float64]:
+        """
+        Stiffness of oil and gas, 4 x 4 [N/m].
+        """
+    def table(self, /) -> Table:
+        """
+        Everything as a table, for people.
+
+        Returns
+        -------
+        Table
+        """
+    def to_dataframe(self, /) -> "pandas.DataFrame":
+        """
+        Stiffness and damping of each motion as a `pandas.DataFrame`.
+
+        Returns
+        -------
+        pandas.DataFrame
+        """
+    def to_xarray(self, /) -> "xarray.Dataset":
+        """
+        The matrices as an `xarray.Dataset` with units.
+
+        Returns
+        -------
+        xarray.Dataset
+        """
+    @property
+    def warnings(self, /) -> list[str]:
+        """
+        Couplings above 5 %.
+        """
+    @property
+    def warp_free_ground(self, /) -> float:
+        """
+        Warp stiffness with the body free to follow, at the ground, tyres in series [N/m].
+        """
+    @property
+    def warp_free_wheels(self, /) -> float:
+        """
+        Warp stiffness with the body free to follow, at the wheels [N/m].
+        """
+    @property
+    def warp_to_roll(self, /) -> float:
+        """
+        Warp over roll stiffness [1].
+        """
+
+@final
+class OperatingPoint:
+    """
+    Where and under which loads the vehicle stands.
+
+    Corners come in the order front left, front right, rear left, rear right; circuits by name.
+    """
+    def __copy__(self, /) -> OperatingPoint: ...
+    def __deepcopy__(self, /, _memo: Any) -> OperatingPoint: ...
+    def __eq__(self, other: object, /) -> bool: ...
+    def __reduce__(self, /) -> "tuple[object, tuple[bytes]]": ...
+    def __repr__(self, /) -> str: ...
+    def __str__(self, /) -> str: ...
+    def _repr_html_(self, /) -> str: ...
+    @staticmethod
+    def _restore(data: bytes) -> OperatingPoint: ...
+    @property
+    def atmosphere(self, /) -> float:
+        """
+        Absolute pressure of the air around [Pa].
+        """
+    @property
+    def attitude(self, /) -> NDArray[float64]:
+        """
+        Heave z [m], pitch [rad] and roll [rad] from the design condition.
+        """
+    @property
+    def circuits(self, /) -> list[str]:
+        """
+        Names of the circuits.
+        """
+    @property
+    def corner_load(self, /) -> NDArray[float64]:
+        """
+        Sprung corner loads [N].
+        """
+    @property
+    def deflection(self, /) -> NDArray[float64]:
+        """
+        Suspension deflections from the design condition, bump positive [m].
+        """
+    @property
+    def gas_volume(self, /) -> NDArray[float64]:
+        """
+        Gas volume of each circuit [m^3].
+        """
+    def linear(self, /) -> LinearSystem:
+        """
+        The linear system about this operating point.
+
+        Returns
+        -------
+        LinearSystem
+
+        Raises
+        ------
+        Singular
+            Where incompressible oil has nowhere to go.
+        """
+    @property
+    def oil_load(self, /) -> NDArray[float64]:
+        """
+        Share of the corner loads that the oil carries, at the wheel [N].
+        """
+    @property
+    def pressure(self, /) -> NDArray[float64]:
+        """
+        Absolute pressure of each circuit [Pa].
+        """
+    @property
+    def spring_load(self, /) -> NDArray[float64]:
+        """
+        Share of the corner loads that the springs carry, at the wheel [N].
+        """
+    @property
+    def spring_preload(self, /) -> NDArray[float64]:
+        """
+        Forces in the springs themselves [N].
+        """
+    def table(self, /) -> Table:
+        """
+        Corner loads and circuits as a table.
+
+        Returns
+        -------
+        Table
+        """
+    @property
+    def temperature(self, /) -> float:
+        """
+        Temperature of gas and oil [K].
+        """
+    def to_dataframe(self, /) -> "pandas.DataFrame":
+        """
+        The corners as a `pandas.DataFrame`.
+
+        Returns
+        -------
+        pandas.DataFrame
+        """
+    def to_xarray(self, /) -> "xarray.Dataset":
+        """
+        The corners and circuits as an `xarray.Dataset` with units.
+
+        Returns
+        -------
+        xarray.Dataset
+        """
+    @property
+    def tyre_load(self, /) -> NDArray[float64]:
+        """
+        Vertical tyre loads [N].
+        """
+    @property
+    def vehicle(self, /) -> Vehicle:
+        """
+        The vehicle that stands there.
+        """
+    @property
+    def warnings(self, /) -> list[str]:
+        """
+        What the engineer should know, e.g. a spring that would have to pull.
+        """
+
+@final
+class Parameter:
+    """
+    A number of a vehicle, as `Vehicle.parameters` lists it.
+    """
+    def __eq__(self, value: object, /) -> bool: ...
+    def __ne__(self, value: object, /) -> bool: ...
+    def __new__(cls, /, path: str, value: SupportsFloat | SupportsIndex, unit: str, meaning: str, bounds: tuple[SupportsFloat | SupportsIndex, SupportsFloat | SupportsIndex]) -> Parameter: ...
+    def __reduce__(self, /) -> "tuple[type[Parameter], tuple[object, ...]]": ...
+    def __repr__(self, /) -> str: ...
+    @property
+    def bounds(self, /) -> tuple[float, float]:
+        """
+        Least and largest value.
+        """
+    @property
+    def meaning(self, /) -> str:
+        """
+        What it means.
+        """
+    @property
+    def path(self, /) -> str:
+        """
+        Path, e.g. ``front.both.spring.rate``.
+        """
+    @property
+    def unit(self, /) -> str:
+        """
+        SI unit, ``1`` if none.
+        """
+    @property
+    def value(self, /) -> float:
+        """
+        Value in SI.
+        """
+
+@final
+class StateSpace:
+    """
+    State space: x' = A x + B u, y = C x + D u.
+
+    Inputs are four road heights [m] and their velocities [m/s]. Unpacks to ``A, B, C, D``.
+    """
+    @property
+    def A(self, /) -> NDArray[float64]:
+        """
+        State matrix, states x states.
+        """
+    @property
+    def B(self, /) -> NDArray[float64]:
+        """
+        Input matrix, states x 8.
+        """
+    @property
+    def C(self, /) -> NDArray[float64]:
+        """
+        Output matrix, outputs x states.
+        """
+    @property
+    def D(self, /) -> NDArray[float64]:
+        """
+        Feedthrough, outputs x 8.
+        """
+    def __copy__(self, /) -> StateSpace: ...
+    def __deepcopy__(self, /, _memo: Any) -> StateSpace: ...
+    def __eq__(self, other: object, /) -> bool: ...
+    def __getitem__(self, index: SupportsIndex, /) -> NDArray[float64]: ...
+    def __iter__(self, /) -> Iterator: ...
+    def __len__(self, /) -> int: ...
+    def __reduce__(self, /) -> "tuple[object, tuple[bytes]]": ...
+    def __repr__(self, /) -> str: ...
+    def __str__(self, /) -> str: ...
+    def _repr_html_(self, /) -> str: ...
+    @staticmethod
+    def _restore(data: bytes) -> StateSpace: ...
+    @property
+    def inputs(self, /) -> list[str]:
+        """
+        Names of the inputs.
+        """
+    @property
+    def output_units(self, /) -> list[str]:
+        """
+        Units of the outputs.
+        """
+    @property
+    def outputs(self, /) -> list[str]:
+        """
+        Names of the outputs.
+        """
+    @property
+    def states(self, /) -> list[str]:
+        """
+        Names of the states.
+        """
+
+@final
+class Table:
+    """
+    Table with a title, headings that carry the units, and notes.
+
+    `print` shows it as text, Jupyter as HTML.
+    """
+    def __eq__(self, value: object, /) -> bool: ...
+    def __ne__(self, value: object, /) -> bool: ...
+    def __repr__(self, /) -> str: ...
+    def __str__(self, /) -> str: ...
+    def _repr_html_(self, /) -> str: ...
+
+@final
+class Vehicle:
+    """
+    A four-wheeled vehicle at its design condition.
+
+    Immutable; made by `load`, `loads`, `example` or `Vehicle.from_dict`. Two vehicles are equal when their
+    files would be.
+    """
+    def __copy__(self, /) -> Vehicle: ...
+    def __deepcopy__(self, /, _memo: Any) -> Vehicle: ...
+    def __eq__(self, other: object, /) -> bool: ...
+    def __reduce__(self, /) -> "tuple[object, tuple[str]]": ...
+    def __repr__(self, /) -> str: ...
+    def __str__(self, /) -> str: ...
+    def _repr_html_(self, /) -> str: ...
+    @property
+    def circuits(self, /) -> list[str]:
+        """
+        Names of the circuits.
+        """
+    @property
+    def description(self, /) -> str | None:
+        """
+        Description given in the file.
+        """
+    @staticmethod
+    def from_dict(data: "collections.abc.Mapping[str, object]") -> "Vehicle":
+        """
+        Builds a vehicle from the data of its file.
+
+        Parameters
+        ----------
+        data : mapping
+            The tables of the file; numbers in SI, or text with a unit.
+
+        Returns
+        -------
+        Vehicle
+
+        Raises
+        ------
+        InvalidInput
+            With every violation at once.
+        """
+    @property
+    def name(self, /) -> str | None:
+        """
+        Name given in the file.
+        """
+    def parameters(self, /) -> list[Parameter]:
+        """
+        Every number once, as the file gives it, ordered by path.
+
+        Returns
+        -------
+        list of Parameter
+        """
+    def save(self, /, path: str | PathLike[str]) -> None:
+        """
+        Writes a file in SI; it is replaced as a whole or not at all.
+
+        Parameters
+        ----------
+        path : str or os.PathLike
+            JSON if it ends with ``.json``, else TOML.
+
+        Raises
+        ------
+        OSError
+            Where the file cannot be written.
+        """
+    @property
+    def settings(self, /) -> list[str]:
+        """
+        Names of the settings in the file.
+        """
+    def settle(self, /) -> OperatingPoint:
+        """
+        The operating point at the design condition.
+
+        Returns
+        -------
+        OperatingPoint
+        """
+    def table(self, /) -> Table:
+        """
+        Every number with its path, value and unit, as a table.
+
+        Returns
+        -------
+        Table
+        """
+    def to_dict(self, /) -> "dict[str, object]":
+        """
+        The data of the file, in SI.
+
+        Returns
+        -------
+        dict
+        """
+    def to_json(self, /) -> str:
+        """
+        The file as JSON, in SI.
+
+        Returns
+        -------
+        str
+        """
+    def to_toml(self, /) -> str:
+        """
+        The file as TOML, in SI.
+
+        Returns
+        -------
+        str
+        """
+    def value(self, /, path: str) -> float:
+        """
+        The number at a path.
+
+        One side of a pair, or one circuit of a layout, can be read too.
+
+        Parameters
+        ----------
+        path : str
+            E.g. ``front.left.tyre.rate``.
+
+        Returns
+        -------
+        float
+            In SI.
+
+        Raises
+        ------
+        InvalidInput
+            For an unknown path, with the nearest ones.
+        """
+    def with_setting(self, /, name: str) -> Vehicle:
+        """
+        The vehicle with a named setting of its file applied.
+
+        Parameters
+        ----------
+        name : str
+            One of `settings`.
+
+        Returns
+        -------
+        Vehicle
+
+        Raises
+        ------
+        InvalidInput
+            For a name that is not known.
+        """
+    def with_values(self, /, values: "collections.abc.Mapping[str, float | str]") -> "Vehicle":
+        """
+        A vehicle with other numbers at some paths.
+
+        Setting one side of a pair, or one circuit of a layout, splits it.
+
+        Parameters
+        ----------
+        values : mapping of str to float or str
+            By path: SI numbers, or text with a unit.
+
+        Returns
+        -------
+        Vehicle
+
+        Raises
+        ------
+        InvalidInput
+            With every violation at once; unknown paths name the nearest ones.
+        """
+
+def example(name: str) -> Vehicle:
+    """
+    One of the example vehicles, all of them inventions.
+
+    Parameters
+    ----------
+    name : str
+        One of `examples()`.
+
+    Returns
+    -------
+    Vehicle
+
+    Raises
+    ------
+    InvalidInput
+        For a name that is not known, with the nearest ones.
+    """
+
+def examples() -> list[str]:
+    """
+    Names of the example vehicles.
+
+    Returns
+    -------
+    list of str
+    """
+
+def load(path: str | PathLike[str]) -> Vehicle:
+    """
+    Reads a vehicle file.
+
+    Parameters
+    ----------
+    path : str or os.PathLike
+        A `.toml` or `.json` file.
+
+    Returns
+    -------
+    Vehicle
+
+    Raises
+    ------
+    InvalidInput
+        With every violation at once.
+    ParseError
+        Where the text is not TOML or JSON.
+    OSError
+        Where the file cannot be read.
+    """
+
+def loads(text: str) -> Vehicle:
+    """
+    Reads a vehicle from the text of a file, TOML or JSON.
+
+    Parameters
+    ----------
+    text : str
+        JSON if it begins with ``{``, else TOML.
+
+    Returns
+    -------
+    Vehicle
+
+    Raises
+    ------
+    InvalidInput
+        With every violation at once.
+    ParseError
+        Where the text is not TOML or JSON.
+    """
