@@ -30,7 +30,11 @@ pub(crate) fn tree(data: &Bound<'_, PyAny>, depth: usize) -> PyResult<Value> {
         return Ok(Value::Object(table));
     }
     if data.is_instance_of::<PyList>() || data.is_instance_of::<PyTuple>() {
-        return data.try_iter()?.map(|item| tree(&item?, depth + 1)).collect::<PyResult<Vec<Value>>>().map(Value::Array);
+        return data
+            .try_iter()?
+            .map(|item| tree(&item?, depth + 1))
+            .collect::<PyResult<Vec<Value>>>()
+            .map(Value::Array);
     }
     if let Ok(whole) = data.cast::<PyInt>()
         && let Ok(whole) = whole.extract::<i64>()
@@ -76,15 +80,23 @@ pub(crate) fn frequencies(data: &Bound<'_, PyAny>) -> PyResult<Vec<f64>> {
     let array = py.import("numpy")?.call_method1("asarray", (data,))?;
     let kind: String = array.getattr("dtype")?.getattr("kind")?.extract()?;
     if !matches!(kind.as_str(), "f" | "i" | "u") {
-        return Err(PyTypeError::new_err(format!("frequency must be real numbers in Hz, not {}", array.getattr("dtype")?)));
+        return Err(PyTypeError::new_err(format!(
+            "frequency must be real numbers in Hz, not {}",
+            array.getattr("dtype")?
+        )));
     }
     let dimensions: usize = array.getattr("ndim")?.extract()?;
     if dimensions > 1 {
-        return Err(PyValueError::new_err(format!("frequency must be a number or one-dimensional, not {dimensions}-dimensional")));
+        return Err(PyValueError::new_err(format!(
+            "frequency must be a number or one-dimensional, not {dimensions}-dimensional"
+        )));
     }
-    let values: Vec<f64> = array.call_method0("ravel")?.call_method1("astype", ("float64",))?.call_method0("tolist")?.extract()?;
+    let values: Vec<f64> =
+        array.call_method0("ravel")?.call_method1("astype", ("float64",))?.call_method0("tolist")?.extract()?;
     match values.iter().find(|value| !value.is_finite() || **value < 0.0) {
-        Some(wrong) => Err(PyValueError::new_err(format!("frequency must be finite and not negative [Hz], not {wrong}"))),
+        Some(wrong) => {
+            Err(PyValueError::new_err(format!("frequency must be finite and not negative [Hz], not {wrong}")))
+        }
         None => Ok(values),
     }
 }

@@ -16,7 +16,8 @@ pub(crate) fn raise(error: Error) -> PyErr {
     let message = error.to_string();
     match error {
         Error::InvalidInput { violations } => {
-            let violations: Vec<_> = violations.into_iter().map(|v| (v.path, v.value, v.unit, v.rule, v.hint)).collect();
+            let violations: Vec<_> =
+                violations.into_iter().map(|v| (v.path, v.value, v.unit, v.rule, v.hint)).collect();
             raised::InvalidInput::new_err((message, violations))
         }
         Error::Parse { line, column, .. } => raised::ParseError::new_err((message, line, column)),

@@ -334,7 +334,11 @@ impl Vehicle {
             [] => "no oil".to_owned(),
             ref names => format!("circuits {}", names.join(", ")),
         };
-        format!("<Vehicle {}: {} numbers, {circuits}>", self.0.name().unwrap_or("without name"), self.0.parameters().len())
+        format!(
+            "<Vehicle {}: {} numbers, {circuits}>",
+            self.0.name().unwrap_or("without name"),
+            self.0.parameters().len()
+        )
     }
 
     fn _repr_html_(&self) -> String {

@@ -19,8 +19,7 @@ pub enum Corner {
 }
 
 /// The corners in their fixed order: FL, FR, RL, RR.
-pub const CORNERS: [Corner; 4] =
-    [Corner::FrontLeft, Corner::FrontRight, Corner::RearLeft, Corner::RearRight];
+pub const CORNERS: [Corner; 4] = [Corner::FrontLeft, Corner::FrontRight, Corner::RearLeft, Corner::RearRight];
 
 /// Names of the corners, in their order.
 pub const CORNER_NAMES: [&str; 4] = ["front_left", "front_right", "rear_left", "rear_right"];
@@ -30,16 +29,11 @@ pub const MOTION_NAMES: [&str; 4] = ["heave", "pitch", "roll", "warp"];
 
 /// Wheel-plane motions, one row each: heave, pitch (nose down: front wheels down relative to the
 /// rear), roll (left up), warp. `TᵀT = 4 I` with these as columns of `T`.
-pub const MOTIONS: [[f64; 4]; 4] = [
-    [1.0, 1.0, 1.0, 1.0],
-    [-1.0, -1.0, 1.0, 1.0],
-    [1.0, -1.0, 1.0, -1.0],
-    [1.0, -1.0, -1.0, 1.0],
-];
+pub const MOTIONS: [[f64; 4]; 4] =
+    [[1.0, 1.0, 1.0, 1.0], [-1.0, -1.0, 1.0, 1.0], [1.0, -1.0, 1.0, -1.0], [1.0, -1.0, -1.0, 1.0]];
 
 /// Names of the mechanical coordinates, in their order.
-pub const MECHANICAL_NAMES: [&str; 7] =
-    ["z", "pitch", "roll", "front_left", "front_right", "rear_left", "rear_right"];
+pub const MECHANICAL_NAMES: [&str; 7] = ["z", "pitch", "roll", "front_left", "front_right", "rear_left", "rear_right"];
 
 /// Number of mechanical coordinates: body heave, pitch, roll and four wheels.
 pub(crate) const MECHANICAL: usize = 7;

@@ -22,13 +22,7 @@ pub struct Violation {
 
 impl Violation {
     pub(crate) fn new(path: impl Into<String>, value: impl Into<String>, rule: impl Into<String>) -> Self {
-        Self {
-            path: path.into(),
-            value: value.into(),
-            unit: String::new(),
-            rule: rule.into(),
-            hint: String::new(),
-        }
+        Self { path: path.into(), value: value.into(), unit: String::new(), rule: rule.into(), hint: String::new() }
     }
 
     pub(crate) fn unit(mut self, unit: &str) -> Self {
@@ -112,11 +106,8 @@ pub enum Error {
 }
 
 fn list(violations: &[Violation]) -> String {
-    let mut text = format!(
-        "{} violation{} in the input:",
-        violations.len(),
-        if violations.len() == 1 { "" } else { "s" }
-    );
+    let mut text =
+        format!("{} violation{} in the input:", violations.len(), if violations.len() == 1 { "" } else { "s" });
     for violation in violations {
         text.push_str("\n  ");
         text.push_str(&violation.to_string());

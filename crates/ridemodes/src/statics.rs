@@ -150,7 +150,8 @@ impl Vehicle {
         for corner in CORNERS {
             let name = corner.name();
             if corner_load[corner] <= 0.0 {
-                warnings.push(format!("{name}: the corner load is {:.0} N; the body would lift off", corner_load[corner]));
+                warnings
+                    .push(format!("{name}: the corner load is {:.0} N; the body would lift off", corner_load[corner]));
             }
             if spring(corner).is_none() {
                 if spring_load[corner].abs() > 1e-6 * corner_load[corner].abs() {

@@ -50,9 +50,9 @@ pub(crate) fn read(text: &str, unit: &str) -> Result<Quantity, Misread> {
     let text = text.trim();
     let end = number_length(text);
     let example = example(unit);
-    let value: f64 = text[..end].parse().map_err(|_| {
-        misread("must be a number, or a text of number and unit", format!("for example \"{example}\""))
-    })?;
+    let value: f64 = text[..end]
+        .parse()
+        .map_err(|_| misread("must be a number, or a text of number and unit", format!("for example \"{example}\"")))?;
     let mut rest = text[end..].trim();
     let mut reference = None;
     for (word, meaning) in [("abs", Reference::Absolute), ("gauge", Reference::Gauge)] {
@@ -70,12 +70,14 @@ pub(crate) fn read(text: &str, unit: &str) -> Result<Quantity, Misread> {
         return if wanted.dimension == ONE.dimension {
             Ok(Quantity { value, reference })
         } else {
-            Err(misread("a number in a text needs its unit", format!("for example \"{example}\"; a plain number is SI")))
+            Err(misread(
+                "a number in a text needs its unit",
+                format!("for example \"{example}\"; a plain number is SI"),
+            ))
         };
     }
-    let given = parse(rest).ok_or_else(|| {
-        misread(format!("\"{rest}\" is not a unit known here"), format!("for example \"{example}\""))
-    })?;
+    let given = parse(rest)
+        .ok_or_else(|| misread(format!("\"{rest}\" is not a unit known here"), format!("for example \"{example}\"")))?;
     if given.dimension != wanted.dimension {
         let mut hint = format!("for example \"{example}\"");
         let mut free = (given.dimension, wanted.dimension);
@@ -151,9 +153,7 @@ fn parse(text: &str) -> Option<Unit> {
             rest = &rest[first.len_utf8()..];
             continue;
         }
-        let length = rest
-            .find(|c: char| matches!(c, '*' | '·' | '/' | ' '))
-            .unwrap_or(rest.len());
+        let length = rest.find(['*', '·', '/', ' ']).unwrap_or(rest.len());
         let factor = power(&rest[..length])?;
         let sign = if divide { -1 } else { 1 };
         result.factor *= factor.factor.powi(sign);

@@ -58,7 +58,7 @@ proptest! {
         let oil = Oil::new(&car);
         let coupling = lin.coupling().unwrap();
         assert_close(&dynamic(&coupling), &dynamic(&oil.quasi_static()), 1e-12);
-        prop_assert_eq!(coupling, coupling.transpose());
+        prop_assert!(largest(&(coupling - coupling.transpose())) <= 1e-15 * largest(&coupling));
         // No more directions than circuits, none of them negative.
         let values = SymmetricEigen::new(coupling).eigenvalues;
         let scale = largest(&values);

@@ -174,7 +174,7 @@ fn ride_frequencies_and_centres_of_an_uncoupled_car() {
     approx::assert_abs_diff_eq!(motions.pitch_centre, 0.0, epsilon = 1e-9);
     assert!(motions.bounce_centre.abs() > 1e9);
     // Front sprung mass m b/(a + b) on two springs, each in series with its tyre.
-    let rate = 2.0 * 22e3 * 200e3 / 222e3;
+    let rate: f64 = 2.0 * 22e3 * 200e3 / 222e3;
     let mass = 1200.0 * 1.1 / 2.4;
     let expected = (rate / mass).sqrt() / (2.0 * std::f64::consts::PI);
     assert_relative_eq!(motions.ride_frequency[0], expected, max_relative = 1e-12);

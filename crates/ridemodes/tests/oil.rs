@@ -17,7 +17,7 @@ struct Line {
     inertance: f64,
 }
 
-pub struct Oil {
+pub(crate) struct Oil {
     /// Volume pushed into each node per wheel travel, B.
     areas: Vec<RowVector4<f64>>,
     compliance: Vec<f64>,
@@ -26,7 +26,7 @@ pub struct Oil {
 }
 
 impl Oil {
-    pub fn new(car: &Value) -> Self {
+    pub(crate) fn new(car: &Value) -> Self {
         let mut oil = Self { areas: Vec::new(), compliance: Vec::new(), circuit: Vec::new(), lines: Vec::new() };
         let fluid = Fluid::new(car);
         for (index, circuit) in circuits(car).iter().enumerate() {
@@ -85,7 +85,7 @@ impl Oil {
     }
 
     /// K_hyd(0) = Σ b bᵀ/ΣC over the circuits, b the sum of B's rows.
-    pub fn quasi_static(&self) -> Matrix4<f64> {
+    pub(crate) fn quasi_static(&self) -> Matrix4<f64> {
         let count = self.circuit.iter().max().map_or(0, |last| last + 1);
         let mut total = Matrix4::zeros();
         for circuit in 0..count {
@@ -99,7 +99,7 @@ impl Oil {
     }
 
     /// D(s), s ≠ 0.
-    pub fn impedance(&self, s: Complex64) -> Matrix4<Complex64> {
+    pub(crate) fn impedance(&self, s: Complex64) -> Matrix4<Complex64> {
         let count = self.areas.len();
         let mut admittance = DMatrix::zeros(count, count);
         for node in 0..count {
@@ -118,12 +118,12 @@ impl Oil {
         Matrix4::from_fn(|i, j| result[(i, j)])
     }
 
-    pub fn circuits(&self) -> usize {
+    pub(crate) fn circuits(&self) -> usize {
         self.circuit.iter().max().map_or(0, |last| last + 1)
     }
 
     /// Lines with inertance, and those without.
-    pub fn line_counts(&self) -> (usize, usize) {
+    pub(crate) fn line_counts(&self) -> (usize, usize) {
         let inertial = self.lines.iter().filter(|line| line.inertance > 0.0).count();
         (inertial, self.lines.len() - inertial)
     }
@@ -173,7 +173,7 @@ fn viscosity(cold: f64, hot: f64, temperature: f64) -> f64 {
 }
 
 /// Gas volume at system pressure of an ideal gas charged at 293.15 K unless said otherwise.
-pub fn gas_volume(accumulator: &Value, pressure: f64, temperature: f64) -> f64 {
+pub(crate) fn gas_volume(accumulator: &Value, pressure: f64, temperature: f64) -> f64 {
     let charged_at = number(&accumulator["precharge_temperature"], 293.15);
     let precharge = accumulator["precharge"].as_f64().unwrap() * temperature / charged_at;
     accumulator["gas_volume"].as_f64().unwrap_or_else(|| accumulator["volume"].as_f64().unwrap() * precharge / pressure)
@@ -195,7 +195,7 @@ fn chamber(car: &Value, key: &str) -> (usize, f64, f64) {
 }
 
 /// Circuits of a car, a layout written out.
-pub fn circuits(car: &Value) -> Vec<Value> {
+pub(crate) fn circuits(car: &Value) -> Vec<Value> {
     let Some(layout) = car.get("layout") else {
         return car["circuits"].as_object().into_iter().flat_map(|all| all.values().cloned()).collect();
     };

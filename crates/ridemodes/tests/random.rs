@@ -6,26 +6,26 @@ use serde_json::{Value, json};
 
 /// What a random car may hold.
 #[derive(Clone, Copy, Debug)]
-pub struct Wanted {
+pub(crate) struct Wanted {
     /// Left and right alike, no product of inertia.
-    pub symmetric: bool,
+    pub(crate) symmetric: bool,
     /// Oil: never, or in every car.
-    pub oil: bool,
+    pub(crate) oil: bool,
     /// Every node of the oil has compliance of its own.
-    pub compressible: bool,
+    pub(crate) compressible: bool,
     /// Lines may have inertance.
-    pub inertance: bool,
+    pub(crate) inertance: bool,
 }
 
-pub const ANY: Wanted = Wanted { symmetric: false, oil: true, compressible: false, inertance: true };
-pub const COMPRESSIBLE: Wanted = Wanted { compressible: true, ..ANY };
-pub const SYMMETRIC: Wanted = Wanted { symmetric: true, ..ANY };
-pub const DRY: Wanted = Wanted { oil: false, ..ANY };
+pub(crate) const ANY: Wanted = Wanted { symmetric: false, oil: true, compressible: false, inertance: true };
+pub(crate) const COMPRESSIBLE: Wanted = Wanted { compressible: true, ..ANY };
+pub(crate) const SYMMETRIC: Wanted = Wanted { symmetric: true, ..ANY };
+pub(crate) const DRY: Wanted = Wanted { oil: false, ..ANY };
 
 const KINDS: [&str; 6] = ["roll", "pitch", "diagonal", "heave", "axle_roll", "one by one"];
 
 /// Cars as data in SI.
-pub fn cars(wanted: Wanted) -> impl Strategy<Value = Value> {
+pub(crate) fn cars(wanted: Wanted) -> impl Strategy<Value = Value> {
     vec(0.0..1.0, 150).prop_map(move |rolls| Dice { rolls, next: 0 }.car(wanted))
 }
 
@@ -202,7 +202,7 @@ impl Dice {
 }
 
 /// The car seen in a mirror: left and right exchanged.
-pub fn mirrored(car: &Value) -> Value {
+pub(crate) fn mirrored(car: &Value) -> Value {
     let mut other = car.clone();
     for key in ["cg_offset", "roll_pitch_product"] {
         let value = car["body"].get(key).and_then(Value::as_f64).unwrap_or(0.0);

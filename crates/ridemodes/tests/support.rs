@@ -6,7 +6,7 @@ use ridemodes::{Complex64, Error, LinearSystem, Vehicle, Violation};
 use serde_json::{Value, json};
 
 /// A car that is alike front and rear, left and right, on springs and dampers alone.
-pub fn square_car() -> Value {
+pub(crate) fn square_car() -> Value {
     let axle = json!({
         "distance": 1.3, "track": 1.5,
         "both": {
@@ -23,7 +23,7 @@ pub fn square_car() -> Value {
 }
 
 /// The square car with a layout of oil in place of dampers; cylinders alike at every corner.
-pub fn square_oil_car(kind: &str) -> Value {
+pub(crate) fn square_oil_car(kind: &str) -> Value {
     let mut car = square_car();
     for axle in ["front", "rear"] {
         let both = car[axle]["both"].as_object_mut().unwrap();
@@ -41,13 +41,13 @@ pub fn square_oil_car(kind: &str) -> Value {
 }
 
 /// Takes out all that makes oil compressible or slow: only the gas is left.
-pub fn only_gas(car: &mut Value) {
+pub(crate) fn only_gas(car: &mut Value) {
     car["oil"].as_object_mut().unwrap().remove("bulk_modulus");
     car["layout"]["accumulators"]["main"]["throttle"] = json!(0.0);
 }
 
 /// Sets a value at a dotted path; the tables on the way are there or made.
-pub fn set(car: &mut Value, path: &str, value: impl Into<Value>) {
+pub(crate) fn set(car: &mut Value, path: &str, value: impl Into<Value>) {
     let mut place = car;
     for key in path.split('.') {
         place = &mut place[key];
@@ -55,20 +55,20 @@ pub fn set(car: &mut Value, path: &str, value: impl Into<Value>) {
     *place = value.into();
 }
 
-pub fn vehicle(car: &Value) -> Vehicle {
+pub(crate) fn vehicle(car: &Value) -> Vehicle {
     Vehicle::from_value(car).unwrap_or_else(|error| panic!("{error}\n{car:#}"))
 }
 
-pub fn linear(car: &Value) -> LinearSystem {
+pub(crate) fn linear(car: &Value) -> LinearSystem {
     of(&vehicle(car))
 }
 
-pub fn of(car: &Vehicle) -> LinearSystem {
+pub(crate) fn of(car: &Vehicle) -> LinearSystem {
     car.settle().and_then(|point| point.linear()).unwrap_or_else(|error| panic!("{error}"))
 }
 
 /// Every violation of a result that must be an error.
-pub fn violations<T: std::fmt::Debug>(result: Result<T, Error>) -> Vec<Violation> {
+pub(crate) fn violations<T: std::fmt::Debug>(result: Result<T, Error>) -> Vec<Violation> {
     match result {
         Err(Error::InvalidInput { violations }) => violations,
         other => panic!("no InvalidInput: {other:?}"),
@@ -76,7 +76,7 @@ pub fn violations<T: std::fmt::Debug>(result: Result<T, Error>) -> Vec<Violation
 }
 
 /// Free motion or locked chamber that a result names.
-pub fn singular<T: std::fmt::Debug>(result: Result<T, Error>) -> String {
+pub(crate) fn singular<T: std::fmt::Debug>(result: Result<T, Error>) -> String {
     match result {
         Err(Error::Singular { matrix, motion }) => format!("{matrix}: {motion}"),
         other => panic!("not Singular: {other:?}"),
@@ -84,18 +84,18 @@ pub fn singular<T: std::fmt::Debug>(result: Result<T, Error>) -> String {
 }
 
 /// One corner of a car given as data: front left, front right, rear left, rear right.
-pub fn corner(car: &Value, index: usize) -> &Value {
+pub(crate) fn corner(car: &Value, index: usize) -> &Value {
     let axle = &car[if index < 2 { "front" } else { "rear" }];
     let side = if index.is_multiple_of(2) { "left" } else { "right" };
     axle.get("both").unwrap_or_else(|| &axle[side])
 }
 
-pub fn number(value: &Value, default: f64) -> f64 {
+pub(crate) fn number(value: &Value, default: f64) -> f64 {
     value.as_f64().unwrap_or(default)
 }
 
 /// J: rows [1, −x, y] of the wheels from the centre of gravity.
-pub fn body_motion(car: &Value) -> Matrix4x3<f64> {
+pub(crate) fn body_motion(car: &Value) -> Matrix4x3<f64> {
     let offset = number(&car["body"]["cg_offset"], 0.0);
     Matrix4x3::from_fn(|i, k| {
         let axle = &car[if i < 2 { "front" } else { "rear" }];
@@ -106,23 +106,23 @@ pub fn body_motion(car: &Value) -> Matrix4x3<f64> {
 }
 
 /// Twist n, the one force pattern that leaves a rigid body alone: nᵀJ = 0.
-pub fn twist(car: &Value) -> Vector4<f64> {
+pub(crate) fn twist(car: &Value) -> Vector4<f64> {
     let (front, rear) = (car["front"]["track"].as_f64().unwrap(), car["rear"]["track"].as_f64().unwrap());
     Vector4::new(1.0 / front, -1.0 / front, -1.0 / rear, 1.0 / rear)
 }
 
 /// Tyre rates on the diagonal.
-pub fn tyres(car: &Value) -> Matrix4<f64> {
+pub(crate) fn tyres(car: &Value) -> Matrix4<f64> {
     Matrix4::from_diagonal(&Vector4::from_fn(|i, _| corner(car, i)["tyre"]["rate"].as_f64().unwrap()))
 }
 
 /// The four motions as columns: heave, pitch (front wheels down), roll (left up), warp.
-pub fn patterns() -> Matrix4<f64> {
+pub(crate) fn patterns() -> Matrix4<f64> {
     Matrix4::new(1.0, -1.0, 1.0, 1.0, 1.0, -1.0, -1.0, -1.0, 1.0, 1.0, 1.0, -1.0, 1.0, 1.0, -1.0, 1.0)
 }
 
 /// Response of every coordinate to road heights under the wheels: (K + sC + s²M) u = (G + s G_c) r.
-pub fn response(lin: &LinearSystem, s: Complex64, road: [f64; 4]) -> DVector<Complex64> {
+pub(crate) fn response(lin: &LinearSystem, s: Complex64, road: [f64; 4]) -> DVector<Complex64> {
     let complex = |matrix: &DMatrix<f64>| matrix.map(Complex64::from);
     let dynamic = complex(lin.stiffness()) + complex(lin.damping()) * s + complex(lin.mass()) * (s * s);
     let drive = complex(&lin.road_stiffness()) + complex(&lin.road_damping()) * s;
@@ -131,24 +131,24 @@ pub fn response(lin: &LinearSystem, s: Complex64, road: [f64; 4]) -> DVector<Com
 }
 
 /// Largest entry by absolute value.
-pub fn largest<'a>(entries: impl IntoIterator<Item = &'a f64>) -> f64 {
+pub(crate) fn largest<'a>(entries: impl IntoIterator<Item = &'a f64>) -> f64 {
     entries.into_iter().fold(0.0, |most, entry| most.max(entry.abs()))
 }
 
 /// Property tests draw the same cases in every run and leave no file behind.
-pub fn fixed(cases: u32) -> Config {
+pub(crate) fn fixed(cases: u32) -> Config {
     Config { cases, failure_persistence: None, rng_seed: RngSeed::Fixed(20_240_607), ..Config::default() }
 }
 
 /// Asserts that two square matrices agree relative to the largest entry of the second.
 #[track_caller]
-pub fn assert_close(found: &DMatrix<f64>, expected: &DMatrix<f64>, tolerance: f64) {
+pub(crate) fn assert_close(found: &DMatrix<f64>, expected: &DMatrix<f64>, tolerance: f64) {
     let scale = largest(expected);
     let worst = largest(&(found - expected));
     assert!(worst <= tolerance * scale, "{worst:e} of {scale:e}\nfound {found:e}\nexpected {expected:e}");
 }
 
 /// A fixed matrix with dynamic size.
-pub fn dynamic<const R: usize, const C: usize>(matrix: &ridemodes::nalgebra::SMatrix<f64, R, C>) -> DMatrix<f64> {
+pub(crate) fn dynamic<const R: usize, const C: usize>(matrix: &ridemodes::nalgebra::SMatrix<f64, R, C>) -> DMatrix<f64> {
     DMatrix::from_fn(R, C, |i, j| matrix[(i, j)])
 }

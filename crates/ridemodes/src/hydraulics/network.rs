@@ -21,9 +21,12 @@ impl Chamber {
     /// Pressed area at the wheel, +A·MR where bump squeezes the chamber, −A·MR where it expands it
     /// [m²]; the rod is on the rebound side.
     pub(crate) fn signed_area<T: Scalar>(self, spec: &Spec<Slot>, numbers: &[T]) -> T {
-        self.cylinder_area(spec, numbers).map_or(T::zero(), |(area, ratio)| {
-            if self.bump { area * ratio } else { -(area * ratio) }
-        })
+        self.cylinder_area(spec, numbers).map_or(
+            T::zero(),
+            |(area, ratio)| {
+                if self.bump { area * ratio } else { -(area * ratio) }
+            },
+        )
     }
 
     fn cylinder_area<T: Scalar>(self, spec: &Spec<Slot>, numbers: &[T]) -> Option<(T, T)> {
@@ -43,10 +46,7 @@ pub(crate) enum Store {
     /// Half the stroke of a chamber.
     Chamber(Chamber),
     /// Half a line.
-    HalfLine {
-        length: Slot,
-        bore: Slot,
-    },
+    HalfLine { length: Slot, bore: Slot },
     /// Gas of an accumulator; its position among the network's.
     Gas(usize),
 }

@@ -79,7 +79,8 @@ pub(crate) fn reduce(
         .collect();
     let is_compliant = |pool: usize| pools[pool].iter().any(|&node| compliant[node]);
     // Volume balance of the pools without compliance, solved for as many line volumes.
-    let mut balance: Vec<Vec<f64>> = (0..pools.len()).filter(|&pool| !is_compliant(pool)).map(|pool| inflow[pool].clone()).collect();
+    let mut balance: Vec<Vec<f64>> =
+        (0..pools.len()).filter(|&pool| !is_compliant(pool)).map(|pool| inflow[pool].clone()).collect();
     let mut order: Vec<usize> = (0..lines.len()).collect();
     order.sort_by_key(|&column| inertial[lines[column]]);
     let pivots = eliminate(&mut balance, &order);

@@ -8,8 +8,8 @@
 use nalgebra::DMatrix;
 use num_complex::Complex64;
 
-use super::undamped::{elastic, whiten};
 use super::RawMode;
+use super::undamped::{elastic, whiten};
 use crate::error::{Error, Result};
 use crate::system::{Canonical, LinearSystem};
 

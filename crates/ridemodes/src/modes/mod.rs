@@ -14,16 +14,8 @@ use crate::error::Result;
 use crate::system::{ElementKind, LinearSystem};
 
 /// Names of the seven mechanical motions and the oil, in the order of `Modes::share`.
-pub const SHARE_NAMES: [&str; 8] = [
-    "body heave",
-    "body pitch",
-    "body roll",
-    "wheel heave",
-    "wheel pitch",
-    "wheel roll",
-    "wheel warp",
-    "oil",
-];
+pub const SHARE_NAMES: [&str; 8] =
+    ["body heave", "body pitch", "body roll", "wheel heave", "wheel pitch", "wheel roll", "wheel warp", "oil"];
 
 /// Names of the columns of `Modes::motion_share`.
 pub const MOTION_SHARE_NAMES: [&str; 5] = ["heave", "pitch", "roll", "warp", "oil"];
@@ -191,9 +183,10 @@ impl Modes {
     /// Rows in the order of tables for people: the seven mechanical motions, then oil, then relaxation.
     pub fn reading_order(&self) -> Vec<usize> {
         let rank = |row: &usize| {
-            SHARE_NAMES[..7].iter().position(|name| *name == self.label[*row]).unwrap_or(
-                if self.label[*row].starts_with("oil") { 7 } else { 8 },
-            )
+            SHARE_NAMES[..7]
+                .iter()
+                .position(|name| *name == self.label[*row])
+                .unwrap_or(if self.label[*row].starts_with("oil") { 7 } else { 8 })
         };
         let mut order: Vec<usize> = (0..self.len()).collect();
         order.sort_by_key(rank);

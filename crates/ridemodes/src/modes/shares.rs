@@ -13,9 +13,7 @@ fn by_coordinate(system: &LinearSystem, shape: &[Complex64]) -> Vec<f64> {
 
 fn momentum(system: &LinearSystem, shape: &[Complex64]) -> Vec<Complex64> {
     let mass = system.mass();
-    (0..shape.len())
-        .map(|i| shape.iter().enumerate().map(|(j, u)| u * mass[(i, j)]).sum())
-        .collect()
+    (0..shape.len()).map(|i| shape.iter().enumerate().map(|(j, u)| u * mass[(i, j)]).sum()).collect()
 }
 
 /// Scales a shape so that its component of most kinetic energy is 1 (of equal ones, the first).
@@ -53,7 +51,11 @@ pub(super) fn kinetic(system: &LinearSystem, shape: &[Complex64]) -> [f64; 8] {
     }
     share[7] = (MECHANICAL..shape.len()).map(|i| energy(shape[i], momentum[i])).sum();
     let total: f64 = share.iter().sum();
-    if total > 0.0 && total.is_finite() { share.map(|part| part / total) } else { [0.0, 0.0, 0.0, 0.0, 0.0, 0.0, 0.0, 1.0] }
+    if total > 0.0 && total.is_finite() {
+        share.map(|part| part / total)
+    } else {
+        [0.0, 0.0, 0.0, 0.0, 0.0, 0.0, 0.0, 1.0]
+    }
 }
 
 /// The same in heave, pitch, roll, warp and the oil.

@@ -16,10 +16,11 @@ pub(super) struct Whitened {
 
 /// Whitens the mass. Circulations stand first, so that no other coordinate comes to depend on them.
 pub(super) fn whiten(split: &Canonical) -> Result<Whitened> {
-    let factor = split.mass.clone().cholesky().ok_or_else(|| Error::Singular {
-        matrix: "mass".into(),
-        motion: "a motion without mass".into(),
-    })?;
+    let factor = split
+        .mass
+        .clone()
+        .cholesky()
+        .ok_or_else(|| Error::Singular { matrix: "mass".into(), motion: "a motion without mass".into() })?;
     let n = split.mass.nrows();
     let mut to_second = DMatrix::identity(n, n);
     factor.l_dirty().tr_solve_lower_triangular_mut(&mut to_second);

@@ -60,7 +60,13 @@ pub(crate) fn best_assignment(rows: usize, columns: usize, score: impl Fn(usize,
 mod tests {
     use super::best_assignment;
 
-    fn brute(rows: usize, columns: usize, score: &dyn Fn(usize, usize) -> f64, row: usize, used: &mut Vec<bool>) -> f64 {
+    fn brute(
+        rows: usize,
+        columns: usize,
+        score: &dyn Fn(usize, usize) -> f64,
+        row: usize,
+        used: &mut Vec<bool>,
+    ) -> f64 {
         if row == rows {
             return 0.0;
         }
@@ -93,7 +99,11 @@ mod tests {
                 distinct.sort_unstable();
                 distinct.dedup();
                 assert_eq!(distinct.len(), rows);
-                approx::assert_relative_eq!(total, brute(rows, columns, &score, 0, &mut vec![false; columns]), epsilon = 1e-12);
+                approx::assert_relative_eq!(
+                    total,
+                    brute(rows, columns, &score, 0, &mut vec![false; columns]),
+                    epsilon = 1e-12
+                );
             }
         }
     }

@@ -25,21 +25,26 @@ pub(crate) fn rank_revealing(matrix: &DMatrix<f64>, first: &[usize]) -> Ranked {
     let mut factor: Vec<Vec<f64>> = Vec::new();
     loop {
         let candidate = |among: &mut dyn Iterator<Item = usize>| {
-            among
-                .filter(|&i| work[(i, i)] > tolerance)
-                .fold(None, |best: Option<usize>, i| match best {
-                    Some(b) if work[(b, b)] >= work[(i, i)] => Some(b),
-                    _ => Some(i),
-                })
+            among.filter(|&i| work[(i, i)] > tolerance).fold(None, |best: Option<usize>, i| match best {
+                Some(b) if work[(b, b)] >= work[(i, i)] => Some(b),
+                _ => Some(i),
+            })
         };
         let mut preferred = rest.iter().copied().filter(|i| first.contains(i));
-        let Some(pivot) = candidate(&mut preferred).or_else(|| candidate(&mut rest.iter().copied()))
-        else {
+        let Some(pivot) = candidate(&mut preferred).or_else(|| candidate(&mut rest.iter().copied())) else {
             break;
         };
         let root = work[(pivot, pivot)].sqrt();
         let column: Vec<f64> = (0..n)
-            .map(|i| if i == pivot { root } else if range.contains(&i) { 0.0 } else { work[(i, pivot)] / root })
+            .map(|i| {
+                if i == pivot {
+                    root
+                } else if range.contains(&i) {
+                    0.0
+                } else {
+                    work[(i, pivot)] / root
+                }
+            })
             .collect();
         for i in 0..n {
             for j in 0..n {
@@ -77,9 +82,11 @@ mod tests {
     #[test]
     fn null_vectors_are_null_and_preference_is_kept() {
         // Gram matrix of five vectors in three dimensions, badly scaled.
-        let vectors = DMatrix::from_row_slice(5, 3, &[
-            1e-4, 0.0, 0.0, 0.0, 2.0, 0.0, 1e-4, 2.0, 0.0, 0.0, 0.0, 3e5, 2e-4, 2.0, 3e5,
-        ]);
+        let vectors = DMatrix::from_row_slice(
+            5,
+            3,
+            &[1e-4, 0.0, 0.0, 0.0, 2.0, 0.0, 1e-4, 2.0, 0.0, 0.0, 0.0, 3e5, 2e-4, 2.0, 3e5],
+        );
         let gram = &vectors * vectors.transpose();
         let found = rank_revealing(&gram, &[2]);
         assert_eq!(found.range.len(), 3);

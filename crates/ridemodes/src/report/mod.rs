@@ -49,7 +49,8 @@ impl Table {
     // Numbers stand to the right, text to the left.
     fn is_numeric(&self, column: usize) -> bool {
         let number = |cell: &String| {
-            cell.chars().next().is_none_or(|first| first.is_ascii_digit() || matches!(first, '-' | '–')) || cell == AT_INFINITY
+            cell.chars().next().is_none_or(|first| first.is_ascii_digit() || matches!(first, '-' | '–'))
+                || cell == AT_INFINITY
         };
         column > 0 && self.rows.iter().filter_map(|row| row.get(column)).all(number)
     }
@@ -58,7 +59,8 @@ impl Table {
     pub fn to_html(&self) -> String {
         let sides: Vec<&str> =
             (0..self.columns.len()).map(|column| if self.is_numeric(column) { "right" } else { "left" }).collect();
-        let mut html = format!("<table><caption style=\"text-align:left\">{}</caption><thead><tr>", escape(&self.title));
+        let mut html =
+            format!("<table><caption style=\"text-align:left\">{}</caption><thead><tr>", escape(&self.title));
         for (place, column) in self.columns.iter().enumerate() {
             html.push_str(&format!("<th style=\"text-align:{}\">{}</th>", sides[place], escape(column)));
         }
@@ -84,7 +86,6 @@ impl Tables {
         self.0.iter().map(Table::to_html).collect()
     }
 }
-
 
 fn escape(text: &str) -> String {
     text.replace('&', "&amp;").replace('<', "&lt;").replace('>', "&gt;").replace('"', "&quot;")

@@ -18,7 +18,17 @@ impl Motions {
     pub fn table(&self) -> Table {
         let mut table = Table::new(
             "The four motions: stiffness and damping at one wheel",
-            &["motion", "springs N/mm", "oil N/mm", "sum N/mm", "oil %", "dampers N·s/m", "oil N·s/m", "sum N·s/m", "oil %"],
+            &[
+                "motion",
+                "springs N/mm",
+                "oil N/mm",
+                "sum N/mm",
+                "oil %",
+                "dampers N·s/m",
+                "oil N·s/m",
+                "sum N·s/m",
+                "oil %",
+            ],
         );
         for (i, name) in MOTION_NAMES.iter().enumerate() {
             let part = |matrix: &MotionMatrix, unit: f64, decimals: usize| {
@@ -73,7 +83,10 @@ impl Motions {
         rolls("sum", &self.roll);
         let [front, rear] = self.ride_frequency;
         table.row(["ride frequency Hz".into(), fixed(front, 3), fixed(rear, 3), String::new()]);
-        for (name, matrix) in [("one raised wheel, wheel sees N/mm", &self.at_wheels), ("one raised wheel, ground sees N/mm", &self.at_ground)] {
+        for (name, matrix) in [
+            ("one raised wheel, wheel sees N/mm", &self.at_wheels),
+            ("one raised wheel, ground sees N/mm", &self.at_ground),
+        ] {
             table.row([
                 name.to_owned(),
                 fixed(0.5e-3 * (matrix[(0, 0)] + matrix[(1, 1)]), 2),
@@ -132,7 +145,12 @@ impl StateSpace {
     /// The names of states, inputs and outputs.
     pub fn table(&self) -> Table {
         let mut table = Table::new(
-            format!("State space, {} states, {} inputs, {} outputs", self.states.len(), self.inputs.len(), self.outputs.len()),
+            format!(
+                "State space, {} states, {} inputs, {} outputs",
+                self.states.len(),
+                self.inputs.len(),
+                self.outputs.len()
+            ),
             &["states", "inputs", "outputs", "unit"],
         );
         let cell = |names: &[String], row: usize| names.get(row).cloned().unwrap_or_default();

@@ -29,7 +29,11 @@ impl Vehicle {
 }
 
 fn significant(value: f64) -> String {
-    if value != 0.0 && !(1e-3..1e6).contains(&value.abs()) { format!("{value:.4e}") } else { format!("{value:.6}").trim_end_matches('0').trim_end_matches('.').to_owned() }
+    if value != 0.0 && !(1e-3..1e6).contains(&value.abs()) {
+        format!("{value:.4e}")
+    } else {
+        format!("{value:.6}").trim_end_matches('0').trim_end_matches('.').to_owned()
+    }
 }
 
 impl OperatingPoint {
@@ -46,7 +50,16 @@ impl OperatingPoint {
     pub fn corner_table(&self) -> Table {
         let mut table = Table::new(
             "Static loads at the design condition",
-            &["corner", "tyre N", "sprung N", "oil N", "spring N (at wheel)", "oil %", "preload N (in spring)", "deflection mm"],
+            &[
+                "corner",
+                "tyre N",
+                "sprung N",
+                "oil N",
+                "spring N (at wheel)",
+                "oil %",
+                "preload N (in spring)",
+                "deflection mm",
+            ],
         );
         for corner in CORNERS {
             table.row([

@@ -74,9 +74,8 @@ impl Reading {
         for (key, value) in given.into_iter().flatten() {
             if !schema.fields.iter().any(|field| field.name == key) {
                 let names = schema.fields.iter().map(|field| field.name);
-                self.violations.push(
-                    Violation::new(join(path, key), describe(value), "unknown key").hint(nearest(key, names)),
-                );
+                self.violations
+                    .push(Violation::new(join(path, key), describe(value), "unknown key").hint(nearest(key, names)));
             }
         }
         let mut tree = Tree::new();
@@ -235,7 +234,8 @@ pub(crate) fn number(field: &Field, path: &str, value: &Value, atmosphere: f64) 
                     (true, Some(Reference::Absolute)) | (false, None) => quantity.value,
                     (true, Some(Reference::Gauge)) => quantity.value + atmosphere,
                     (true, None) => {
-                        let bar = |p: f64| format!("{:.5}", p / 1e5).trim_end_matches('0').trim_end_matches('.').to_owned();
+                        let bar =
+                            |p: f64| format!("{:.5}", p / 1e5).trim_end_matches('0').trim_end_matches('.').to_owned();
                         return Err(wrong(
                             "a pressure must say abs or gauge".into(),
                             format!(

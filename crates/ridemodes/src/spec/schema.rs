@@ -117,9 +117,7 @@ impl Bounds {
 
     /// Whether `value` is finite and allowed.
     pub fn holds(&self, value: f64) -> bool {
-        value.is_finite()
-            && value <= self.largest
-            && if self.open { value > self.least } else { value >= self.least }
+        value.is_finite() && value <= self.largest && if self.open { value > self.least } else { value >= self.least }
     }
 
     /// The rule in words.

@@ -142,9 +142,15 @@ pub(crate) fn circuit_of(kind: LayoutKind, corner: Corner, bump: bool) -> &'stat
         LayoutKind::Roll => left(corner.is_left() == bump),
         LayoutKind::Pitch => front(corner.is_front() == bump),
         LayoutKind::Heave => {
-            if bump { "bump" } else { "rebound" }
+            if bump {
+                "bump"
+            } else {
+                "rebound"
+            }
         }
-        LayoutKind::AxleRoll => CORNERS[2 * usize::from(!corner.is_front()) + usize::from(corner.is_left() != bump)].name(),
+        LayoutKind::AxleRoll => {
+            CORNERS[2 * usize::from(!corner.is_front()) + usize::from(corner.is_left() != bump)].name()
+        }
         LayoutKind::Diagonal => CORNERS[if bump { corner.index() } else { 3 - corner.index() }].name(),
     }
 }

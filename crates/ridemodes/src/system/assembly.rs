@@ -30,7 +30,12 @@ pub(crate) fn assemble<T: Scalar>(structure: &Structure, numbers: &[T]) -> Resul
         let Some(data) = spec.corner(corner) else { continue };
         let names = &structure.names.corners[corner.index()];
         let wheel = build.wheel(corner);
-        build.add(&names.wheel, ElementKind::WheelMass, wheel.clone(), [value(data.unsprung_mass), T::zero(), T::zero()]);
+        build.add(
+            &names.wheel,
+            ElementKind::WheelMass,
+            wheel.clone(),
+            [value(data.unsprung_mass), T::zero(), T::zero()],
+        );
         build.add(&names.tyre, ElementKind::Tyre, wheel, [T::zero(), value(data.tyre.damping), value(data.tyre.rate)]);
         build.on_road(corner);
         if let Some(spring) = &data.spring {

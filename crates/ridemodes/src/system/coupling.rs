@@ -39,11 +39,8 @@ impl QuasiStatic {
         let stiffness = sum(system, |element| element.stiffness);
         let damping = sum(system, |element| element.damping);
         // Coordinates of loops first become circulations, on which the stiffness vanishes.
-        let loops: Vec<(usize, Vec<f64>)> = system
-            .circulations
-            .iter()
-            .map(|(free, shape)| (free - MECHANICAL, shape[MECHANICAL..].to_vec()))
-            .collect();
+        let loops: Vec<(usize, Vec<f64>)> =
+            system.circulations.iter().map(|(free, shape)| (free - MECHANICAL, shape[MECHANICAL..].to_vec())).collect();
         let held: Vec<usize> = (0..inner).filter(|i| !loops.iter().any(|(free, _)| free == i)).collect();
         let block = |matrix: &DMatrix<f64>, rows: &[usize], columns: &[usize]| {
             DMatrix::from_fn(rows.len(), columns.len(), |i, j| matrix[(rows[i], columns[j])])
@@ -148,9 +145,8 @@ impl LinearSystem {
         let damping = part(|element| element.damping);
         let mass = part(|element| element.mass);
         // Inner coordinates of mechanical branches have no part in it.
-        let volumes: Vec<usize> = (4..size)
-            .filter(|&i| self.elements.iter().any(|e| e.kind.is_hydraulic() && e.row[i + 3] != 0.0))
-            .collect();
+        let volumes: Vec<usize> =
+            (4..size).filter(|&i| self.elements.iter().any(|e| e.kind.is_hydraulic() && e.row[i + 3] != 0.0)).collect();
         let scale: Vec<f64> = (0..size)
             .map(|i| {
                 let size = stiffness[(i, i)].max(damping[(i, i)]);

@@ -205,7 +205,11 @@ impl LinearSystem {
         Self {
             point: self.point.clone(),
             coordinates: keep.iter().map(|&i| self.coordinates[i].clone()).collect(),
-            elements: self.elements.iter().map(|element| Element { row: row(&element.row), ..element.clone() }).collect(),
+            elements: self
+                .elements
+                .iter()
+                .map(|element| Element { row: row(&element.row), ..element.clone() })
+                .collect(),
             pressures: self
                 .pressures
                 .iter()

@@ -137,7 +137,8 @@ impl Vehicle {
             return Ok(self.numbers[slot]);
         }
         if let Some((left, right)) = change::sides(path)
-            && let (Some(&left), Some(&right)) = (self.structure.readable.get(&left), self.structure.readable.get(&right))
+            && let (Some(&left), Some(&right)) =
+                (self.structure.readable.get(&left), self.structure.readable.get(&right))
         {
             let (left, right) = (self.numbers[left], self.numbers[right]);
             return if left == right {
@@ -176,9 +177,7 @@ impl Vehicle {
             } else {
                 crate::spec::nearest(name, self.settings().into_iter())
             };
-            return Err(Error::invalid(
-                Violation::new(format!("settings.{name}"), "", "no such setting").hint(hint),
-            ));
+            return Err(Error::invalid(Violation::new(format!("settings.{name}"), "", "no such setting").hint(hint)));
         };
         let changes: Vec<(String, Value)> = set.iter().map(|(path, value)| (path.clone(), value.clone())).collect();
         change::apply(self, &changes)

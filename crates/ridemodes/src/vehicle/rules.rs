@@ -29,9 +29,8 @@ pub(super) fn groups(tree: &Tree) -> Vec<Violation> {
                 Violation::new(format!("{axle}.both"), "a table", "stands beside left or right")
                     .hint("give both, or left and right"),
             ),
-            (false, false, false) => violations.push(
-                Violation::new(format!("{axle}.both"), "", "is missing").hint("give both, or left and right"),
-            ),
+            (false, false, false) => violations
+                .push(Violation::new(format!("{axle}.both"), "", "is missing").hint("give both, or left and right")),
             (false, left, _) => violations.push(
                 Violation::new(format!("{axle}.{}", if left { "right" } else { "left" }), "", "is missing")
                     .hint("give both, or left and right"),
@@ -44,9 +43,10 @@ pub(super) fn groups(tree: &Tree) -> Vec<Violation> {
             Violation::new("layout", "a table", "stands beside circuits").hint("give a layout, or circuits one by one"),
         );
     }
-    let equipped = ["front", "rear"].iter().flat_map(|axle| tree.get(*axle)?.as_object()).flatten().any(|(side, corner)| {
-        matches!(side.as_str(), "both" | "left" | "right") && corner.get("cylinder").is_some()
-    });
+    let equipped =
+        ["front", "rear"].iter().flat_map(|axle| tree.get(*axle)?.as_object()).flatten().any(|(side, corner)| {
+            matches!(side.as_str(), "both" | "left" | "right") && corner.get("cylinder").is_some()
+        });
     if tree.contains_key("layout") && !equipped {
         violations.push(
             Violation::new("layout", "a table", "no corner has a cylinder").hint("for example front.both.cylinder"),
@@ -127,8 +127,7 @@ pub(super) fn check(spec: &Spec<Slot>, parameters: &[Parameter], numbers: &[f64]
             Kind::Number { unit, .. } => unit,
             _ => "",
         };
-        let violation =
-            Violation::new(&parameter.path, numbers[slot.0].to_string(), rule).unit(unit).hint(hint);
+        let violation = Violation::new(&parameter.path, numbers[slot.0].to_string(), rule).unit(unit).hint(hint);
         if !violations.contains(&violation) {
             violations.push(violation);
         }

@@ -127,7 +127,14 @@ impl Vehicle {
         });
         refuse(violations)?;
         let network = Network::new(&spec);
-        let structure = Structure { given: tree, parameters: reading.parameters, readable, spec, network, names: ElementNames::new() };
+        let structure = Structure {
+            given: tree,
+            parameters: reading.parameters,
+            readable,
+            spec,
+            network,
+            names: ElementNames::new(),
+        };
         let vehicle = Self { structure: Arc::new(structure), numbers: reading.numbers.into() };
         vehicle.check_settings()?;
         Ok(vehicle)
