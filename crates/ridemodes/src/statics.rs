@@ -7,9 +7,9 @@ use serde::{Deserialize, Serialize};
 use crate::axes::{CORNERS, PerCorner};
 use crate::error::Result;
 use crate::numerics::Scalar;
-use crate::spec::Spec;
+use crate::spec::{Slot, Spec};
 use crate::units::STANDARD_GRAVITY;
-use crate::vehicle::{Slot, Vehicle};
+use crate::vehicle::Vehicle;
 
 /// Corner positions from the centre of gravity, x forward and y left [m].
 #[derive(Clone, Copy, Debug, PartialEq, Serialize, Deserialize)]

@@ -27,9 +27,12 @@ fn assert_routes_agree(car: &serde_json::Value) -> Result<(), TestCaseError> {
     let found = linear(car).dynamic_coupling(&FREQUENCIES).unwrap();
     let oil = Oil::new(car);
     for (place, f) in FREQUENCIES.iter().enumerate() {
-        let expected = oil.impedance(Complex64::new(0.0, 2.0 * PI * f));
+        let s = Complex64::new(0.0, 2.0 * PI * f);
+        let (expected, nodal) = (oil.impedance_of_stars(s), oil.impedance(s));
         let error = worst(&(at(&found, place) - expected)) / worst(&expected);
         prop_assert!(error <= 1e-10, "{} Hz: {:e}", f, error);
+        let error = worst(&(nodal - expected)) / worst(&expected);
+        prop_assert!(error <= 1e-8, "{} Hz, nodal: {:e}", f, error);
     }
     Ok(())
 }

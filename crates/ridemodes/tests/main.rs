@@ -11,6 +11,7 @@ mod extremes;
 mod faults;
 mod file;
 mod invariants;
+mod layers;
 mod matrices;
 mod motions;
 mod oil;

@@ -98,7 +98,7 @@ impl Oil {
         total
     }
 
-    /// D(s), s ≠ 0.
+    /// D(s) for s ≠ 0 as written above. Where s C is small beside 1/(R + sI) it loses digits.
     pub(crate) fn impedance(&self, s: Complex64) -> Matrix4<Complex64> {
         let count = self.areas.len();
         let mut admittance = DMatrix::zeros(count, count);
@@ -116,6 +116,27 @@ impl Oil {
         let pressures = admittance.lu().solve(&(&areas * s)).expect("every node has a way to the gas");
         let result = areas.transpose() * pressures;
         Matrix4::from_fn(|i, j| result[(i, j)])
+    }
+
+    /// The same with the ends of the lines eliminated by hand, which loses none: with Y = 1/(R + sI) an end passes
+    /// Y/(sC + Y) of its inflow on to the hub and loads it by Y·sC/(Y + sC).
+    pub(crate) fn impedance_of_stars(&self, s: Complex64) -> Matrix4<Complex64> {
+        let mut total = Matrix4::zeros();
+        let is_end = |node: usize| self.lines.iter().any(|line| line.to == node);
+        for hub in (0..self.areas.len()).filter(|&node| !is_end(node)) {
+            let mut load = s * self.compliance[hub];
+            let mut inflow = self.areas[hub].map(Complex64::from);
+            for line in self.lines.iter().filter(|line| line.from == hub) {
+                let impedance = line.resistance + s * line.inertance;
+                let (area, store) = (self.areas[line.to].map(Complex64::from), s * self.compliance[line.to]);
+                let passed = 1.0 / (1.0 + store * impedance);
+                load += store * passed;
+                inflow += area * passed;
+                total += area.transpose() * area * (s * impedance * passed);
+            }
+            total += inflow.transpose() * inflow * (s / load);
+        }
+        total
     }
 
     pub(crate) fn circuits(&self) -> usize {

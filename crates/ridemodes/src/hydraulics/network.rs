@@ -6,8 +6,7 @@ use super::oil::{Oil, pipe_area};
 use crate::axes::Corner;
 use crate::gas::{self, Fill, GasState};
 use crate::numerics::Scalar;
-use crate::spec::{Inertia, Spec};
-use crate::vehicle::{Slot, chamber};
+use crate::spec::{Inertia, Slot, Spec, chamber};
 
 /// A cylinder chamber.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]

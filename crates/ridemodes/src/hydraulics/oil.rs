@@ -1,8 +1,7 @@
 //! Oil properties at a temperature and pressure.
 
 use crate::numerics::Scalar;
-use crate::spec;
-use crate::vehicle::Slot;
+use crate::spec::{self, Slot};
 
 /// Oil at the working temperature.
 #[derive(Clone, Copy, Debug)]

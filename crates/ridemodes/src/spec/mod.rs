@@ -1,11 +1,13 @@
 //! The vehicle file as plain data: one source for every field's meaning, unit and bounds.
 
 mod fields;
+mod keys;
 mod read;
 mod schema;
 mod tree;
 
 pub use fields::*;
+pub(crate) use keys::{Slot, chamber};
 pub(crate) use read::{CURRENT_FORMAT, Parameter, describe, nearest, number, read_tree};
 pub use schema::{Bounds, Choice, Described, Field, Kind, Named, Presence, Schema, TablePresence};
 pub(crate) use tree::{Tree, expand, fill, join, parse_json, parse_toml, walk};

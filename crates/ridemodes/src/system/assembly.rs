@@ -7,8 +7,9 @@ use crate::axes::{CORNERS, Corner, MECHANICAL};
 use crate::error::Result;
 use crate::hydraulics::{Chamber, LineValues, Reduction, Row, Store, reduce};
 use crate::numerics::Scalar;
+use crate::spec::Slot;
 use crate::statics::Positions;
-use crate::vehicle::{Slot, Structure};
+use crate::vehicle::Structure;
 
 /// Assembles the linear system at the design condition.
 pub(crate) fn assemble<T: Scalar>(structure: &Structure, numbers: &[T]) -> Result<Assembly<T>> {

@@ -10,10 +10,9 @@ use std::sync::Arc;
 use serde_json::Value;
 
 use crate::error::{Error, Result, Violation, refuse};
-use crate::spec::{Bounds, Kind, Presence, Spec};
+use crate::spec::{Bounds, Kind, Presence, Slot, Spec};
 
-pub(crate) use rules::chamber;
-pub(crate) use structure::{Slot, Structure};
+pub(crate) use structure::Structure;
 
 /// A vehicle that has passed every check.
 ///

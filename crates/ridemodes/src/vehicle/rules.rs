@@ -2,21 +2,9 @@
 
 use serde_json::Value;
 
-use super::Slot;
-use crate::axes::{CORNERS, Corner};
+use crate::axes::CORNERS;
 use crate::error::Violation;
-use crate::spec::{Kind, Parameter, Spec, Tree};
-
-/// A chamber of a circuit by its key, e.g. `front_left_bump`.
-pub(crate) fn chamber(key: &str) -> Option<(Corner, bool)> {
-    let (corner, side) = key.rsplit_once('_')?;
-    let bump = match side {
-        "bump" => true,
-        "rebound" => false,
-        _ => return None,
-    };
-    Some((Corner::from_name(corner)?, bump))
-}
+use crate::spec::{Kind, Parameter, Slot, Spec, Tree, chamber};
 
 /// Rules on groups of the raw file: pairs, layouts, cylinders.
 pub(super) fn groups(tree: &Tree) -> Vec<Violation> {

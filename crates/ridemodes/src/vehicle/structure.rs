@@ -3,7 +3,6 @@
 use std::collections::{BTreeMap, HashMap};
 use std::sync::Arc;
 
-use serde::{Deserialize, Serialize};
 use serde_json::Value;
 
 use super::{Vehicle, change, rules};
@@ -11,13 +10,8 @@ use crate::axes::CORNERS;
 use crate::error::{Result, Violation, refuse};
 use crate::hydraulics::Network;
 use crate::spec::{
-    Described, Kind, Parameter, Spec, Tree, describe, expand, fill, join, nearest, number, read_tree, walk,
+    Described, Kind, Parameter, Slot, Spec, Tree, describe, expand, fill, join, nearest, number, read_tree, walk,
 };
-
-/// Position of a number in a vehicle's vector of numbers.
-#[derive(Clone, Copy, Debug, PartialEq, Eq, Hash, Serialize, Deserialize)]
-#[serde(transparent)]
-pub(crate) struct Slot(pub usize);
 
 /// Elements, nodes, lines, names: everything of a vehicle but its numbers.
 #[derive(Debug)]

@@ -1,0 +1,65 @@
+//! A module uses lower layers only. The layers are data here; any other edge fails.
+
+use std::fs;
+use std::path::{Path, PathBuf};
+
+/// Modules of `src` from the lowest layer to the highest; those of one layer stand in one row.
+const LAYERS: [&[&str]; 9] = [
+    &["error", "axes", "units", "numerics"],
+    &["spec"],
+    &["gas", "hydraulics"],
+    &["vehicle"],
+    &["statics"],
+    &["system"],
+    &["corner_motions", "modes"],
+    &["report"],
+    &["examples"],
+];
+
+fn layer(module: &str) -> usize {
+    LAYERS
+        .iter()
+        .position(|layer| layer.contains(&module))
+        .unwrap_or_else(|| panic!("src/{module} is in no layer: add it to LAYERS and to DEVELOPERS.md"))
+}
+
+fn sources(folder: &Path, found: &mut Vec<PathBuf>) {
+    for entry in fs::read_dir(folder).unwrap() {
+        let path = entry.unwrap().path();
+        if path.is_dir() {
+            sources(&path, found);
+        } else if path.extension().is_some_and(|extension| extension == "rs") {
+            found.push(path);
+        }
+    }
+}
+
+#[test]
+fn modules_use_lower_layers_only() {
+    let root = Path::new(env!("CARGO_MANIFEST_DIR")).join("src");
+    let mut files = Vec::new();
+    sources(&root, &mut files);
+    let mut edges = 0;
+    for file in files {
+        let first = file.strip_prefix(&root).unwrap().components().next().unwrap();
+        let module = Path::new(first.as_os_str()).file_stem().unwrap().to_str().unwrap().to_owned();
+        if module == "lib" {
+            continue;
+        }
+        let text = fs::read_to_string(&file).unwrap();
+        for used in text.split("crate::").skip(1) {
+            let used: String = used.chars().take_while(|c| c.is_ascii_alphanumeric() || *c == '_').collect();
+            // `crate::Error` and the like are the public surface of a lower layer.
+            if used.is_empty() || used.starts_with(char::is_uppercase) || used == module {
+                continue;
+            }
+            edges += 1;
+            assert!(
+                layer(&used) < layer(&module) || (layer(&used) == 0 && layer(&module) == 0),
+                "{} uses {used}, which is not below it",
+                file.display()
+            );
+        }
+    }
+    assert!(edges > 50, "only {edges} edges found: is the search still right?");
+}
