@@ -31,7 +31,7 @@ fn an_overdamped_body_has_two_real_poles_of_one_label() {
         // λ₁λ₂ stays near the undamped ω².
         let undamped = lin.modes_of(ModeKind::Undamped).unwrap();
         let omega = undamped.pole[undamped.rows(label)[0]].norm();
-        assert_relative_eq!((pair[0].re * pair[1].re).sqrt(), omega, max_relative = 0.1);
+        assert_relative_eq!((pair[0].re * pair[1].re).sqrt(), omega, max_relative = 0.15);
     }
     for label in ["wheel heave", "wheel pitch", "wheel roll", "wheel warp"] {
         assert_eq!(poles(&modes, label).len(), 1, "{label}: {:?}", modes.label);

@@ -4,7 +4,8 @@
 //! |zs/zr| = mu/ms at √(kt/mu), and |(zs − zu)/zr| = 1 + mu/ms at √(kt/(ms + mu)).
 
 use approx::assert_relative_eq;
-use ridemodes::Complex64;
+use ridemodes::nalgebra::{DMatrix, DVector};
+use ridemodes::{Complex64, StateSpace};
 use serde_json::{Value, json};
 
 use crate::support::{linear, response, set, square_car, square_oil_car};
@@ -63,6 +64,37 @@ fn tyre_damping_moves_the_points() {
     assert!((u[0].norm() / (WHEEL / BODY) - 1.0).abs() > 1e-3);
 }
 
+// Pressures of the state space at the hubs are those of the nodes.
+#[test]
+fn hub_pressures_follow_the_deflections() {
+    let mut car = square_oil_car("roll");
+    set(&mut car, "layout.ports.front_bump", json!({ "throttle": 4e8, "line": { "length": 1.2, "bore": 0.01 } }));
+    let lin = linear(&car);
+    let space = lin.state_space().unwrap();
+    let road = [0.01, -0.02, 0.015, 0.005];
+    for omega in [4.0, 40.0] {
+        let s = Complex64::new(0.0, omega);
+        let deflection = lin.deflection().map(Complex64::from) * response(&lin, s, road);
+        let y = output(&space, s, road);
+        // The layout's circuits are left and right, in this order.
+        for (circuit, per_travel) in ["left", "right"].iter().zip(crate::oil::Oil::new(&car).hub_pressures(s)) {
+            let row = space.outputs.iter().position(|name| *name == format!("pressure.circuits.{circuit}")).unwrap();
+            let expected = (per_travel * &deflection)[0];
+            assert!((y[row] - expected).norm() <= 1e-8 * expected.norm(), "{} {expected}", y[row]);
+            assert_eq!(space.output_units[row], "Pa");
+        }
+    }
+}
+
+fn output(space: &StateSpace, s: Complex64, road: [f64; 4]) -> DVector<Complex64> {
+    let size = space.a.nrows();
+    let heights = road.iter().map(|height| Complex64::from(*height));
+    let drive = DVector::from_iterator(8, heights.clone().chain(heights.map(|height| height * s)));
+    let resolvent = DMatrix::from_diagonal_element(size, size, s) - space.a.map(Complex64::from);
+    let x = resolvent.lu().solve(&(space.b.map(Complex64::from) * &drive)).unwrap();
+    space.c.map(Complex64::from) * x + space.d.map(Complex64::from) * drive
+}
+
 // Slowly lifted ground lifts the whole car; the state space agrees with the matrices everywhere.
 #[test]
 fn a_slow_road_lifts_the_car_and_the_state_space_agrees() {
@@ -75,14 +107,7 @@ fn a_slow_road_lifts_the_car_and_the_state_space_agrees() {
             let s = Complex64::new(0.0, omega);
             let road = [0.01, -0.02, 0.015, 0.005];
             let u = response(&lin, s, road);
-            let size = space.a.nrows();
-            let input = Complex64::from(1.0);
-            let drive: Vec<Complex64> =
-                road.iter().map(|r| input * *r).chain(road.iter().map(|r| s * *r)).collect();
-            let drive = ridemodes::nalgebra::DVector::from_vec(drive);
-            let resolvent = ridemodes::nalgebra::DMatrix::from_diagonal_element(size, size, s) - space.a.map(Complex64::from);
-            let x = resolvent.lu().solve(&(space.b.map(Complex64::from) * &drive)).unwrap();
-            let y = space.c.map(Complex64::from) * x + space.d.map(Complex64::from) * drive;
+            let y = output(&space, s, road);
             let deflection = lin.deflection().map(Complex64::from) * &u;
             for (row, name) in space.outputs.iter().enumerate() {
                 let expected = match name.as_str() {

@@ -4,10 +4,11 @@ use std::fs;
 use std::path::{Path, PathBuf};
 
 /// Modules of `src` from the lowest layer to the highest; those of one layer stand in one row.
-const LAYERS: [&[&str]; 9] = [
+const LAYERS: [&[&str]; 10] = [
     &["error", "axes", "units", "numerics"],
     &["spec"],
-    &["gas", "hydraulics"],
+    &["gas"],
+    &["hydraulics"],
     &["vehicle"],
     &["statics"],
     &["system"],

@@ -19,5 +19,6 @@ mod paths;
 mod poles;
 mod random;
 mod shares;
+mod statics;
 mod support;
 mod text;

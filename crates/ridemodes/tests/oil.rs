@@ -139,6 +139,24 @@ impl Oil {
         total
     }
 
+    /// Pressure at the hub of each circuit per wheel travel, hubs in the order of [`circuits`].
+    pub(crate) fn hub_pressures(&self, s: Complex64) -> Vec<RowVector4<Complex64>> {
+        let is_end = |node: usize| self.lines.iter().any(|line| line.to == node);
+        (0..self.areas.len())
+            .filter(|&node| !is_end(node))
+            .map(|hub| {
+                let mut load = Complex64::from(self.compliance[hub]);
+                let mut inflow = self.areas[hub].map(Complex64::from);
+                for line in self.lines.iter().filter(|line| line.from == hub) {
+                    let store = s * self.compliance[line.to] * (line.resistance + s * line.inertance);
+                    load += self.compliance[line.to] / (1.0 + store);
+                    inflow += self.areas[line.to].map(Complex64::from) / (1.0 + store);
+                }
+                inflow / load
+            })
+            .collect()
+    }
+
     pub(crate) fn circuits(&self) -> usize {
         self.circuit.iter().max().map_or(0, |last| last + 1)
     }
@@ -213,6 +231,12 @@ fn chamber(car: &Value, key: &str) -> (usize, f64, f64) {
     let area = round(&cylinder["bore"]) - if bump { 0.0 } else { round(&cylinder["rod"]) };
     let volume = area * number(&cylinder["stroke"], 0.0) / 2.0;
     (index, area * number(&cylinder["motion_ratio"], 1.0) * if bump { 1.0 } else { -1.0 }, volume)
+}
+
+/// Wheel and signed area of a chamber, +A·MR where bump squeezes it.
+pub(crate) fn signed_area(car: &Value, key: &str) -> (usize, f64) {
+    let (wheel, area, _) = chamber(car, key);
+    (wheel, area)
 }
 
 /// Circuits of a car, a layout written out.

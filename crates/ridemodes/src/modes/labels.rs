@@ -91,7 +91,7 @@ pub(super) fn damped(system: &LinearSystem, modes: &[RawMode], reference: &[RawM
         for (a, &first) in free.iter().enumerate() {
             for &second in &free[a + 1..] {
                 let product = (modes[first].pole.re * modes[second].pole.re).abs() / (omega * omega);
-                let score = likeness(first, other).min(likeness(second, other)) * (-0.5 * product.ln().abs()).exp();
+                let score = likeness(first, other).min(likeness(second, other)) * (-product.ln().abs()).exp();
                 if best.is_none_or(|(most, ..)| score > most) {
                     best = Some((score, first, second));
                 }

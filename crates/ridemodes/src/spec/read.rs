@@ -255,6 +255,8 @@ pub(crate) fn number(field: &Field, path: &str, value: &Value, atmosphere: f64) 
     };
     if bounds.holds(si) {
         Ok(si)
+    } else if !si.is_finite() {
+        Err(wrong("must be a finite number".into(), String::new()))
     } else {
         Err(wrong(bounds.rule(), if si == 0.0 { "leave it out if there is none".into() } else { String::new() }))
     }

@@ -247,3 +247,83 @@ impl<T: Scalar> Builder<T> {
         row
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use nalgebra::DMatrix;
+
+    use super::*;
+    use crate::numerics::Dual;
+    use crate::vehicle::Vehicle;
+
+    // M, C and K in any scalar, summed from the elements.
+    fn matrices<T: Scalar>(assembly: &Assembly<T>) -> [DMatrix<T>; 3]
+    where
+        T: nalgebra::Scalar,
+    {
+        let n = assembly.coordinates.len();
+        let mut sums = [(); 3].map(|()| DMatrix::from_element(n, n, T::zero()));
+        for i in 0..3 {
+            for j in 0..3 {
+                sums[0][(i, j)] = assembly.body[i][j];
+            }
+        }
+        for element in &assembly.elements {
+            let scalars = [element.mass, element.damping, element.stiffness];
+            for (sum, scalar) in sums.iter_mut().zip(scalars) {
+                for i in 0..n {
+                    for j in 0..n {
+                        sum[(i, j)] += scalar * element.row[i] * element.row[j];
+                    }
+                }
+            }
+        }
+        sums
+    }
+
+    // The derivative with respect to every number of every example, against central differences.
+    #[test]
+    fn derivatives_by_every_number() {
+        let mut compared = 0;
+        for name in Vehicle::examples() {
+            let car = Vehicle::example(name).unwrap();
+            let at = |slot: usize, value: f64| {
+                let mut numbers = car.numbers().to_vec();
+                numbers[slot] = value;
+                matrices(&assemble(car.structure(), &numbers).unwrap())
+            };
+            for (slot, parameter) in car.structure().parameters.iter().enumerate() {
+                let value = car.numbers()[slot];
+                if value == 0.0 {
+                    continue; // at a bound: a throttle of zero is no throttle
+                }
+                let seeded: Vec<Dual> = (0..car.numbers().len())
+                    .map(|i| {
+                        let number = car.numbers()[i];
+                        if i == slot { Dual::variable(number) } else { Dual::constant(number) }
+                    })
+                    .collect();
+                let exact = matrices(&assemble(car.structure(), &seeded).unwrap());
+                let step = 1e-5 * value;
+                for ((exact, above), below) in exact.iter().zip(at(slot, value + step)).zip(at(slot, value - step)) {
+                    let size = |i: usize| exact[(i, i)].value.abs();
+                    for (index, dual) in exact.iter().enumerate() {
+                        let (row, column) = (index % exact.nrows(), index / exact.nrows());
+                        let numeric = (above[index] - below[index]) / (2.0 * step);
+                        // A difference cannot see below the rounding of the sums it subtracts.
+                        let blur = 1e-10 * (size(row) * size(column)).sqrt() / value.abs();
+                        let error = (dual.derivative - numeric).abs();
+                        assert!(
+                            error <= 1e-7 * numeric.abs() + blur,
+                            "{name} {}: {} against {numeric}",
+                            parameter.path,
+                            dual.derivative
+                        );
+                        compared += usize::from(numeric != 0.0);
+                    }
+                }
+            }
+        }
+        assert!(compared > 1000, "{compared}");
+    }
+}

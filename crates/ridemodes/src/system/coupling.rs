@@ -162,6 +162,11 @@ impl LinearSystem {
             } else {
                 let entry = |i: usize, j: usize| s * s * mass[(i, j)] + s * damping[(i, j)] + stiffness[(i, j)];
                 let direct = Matrix4::from_fn(&entry);
+                if volumes.is_empty() {
+                    // Everything at the nodes: nothing flows that is not the wheels' own.
+                    write(&mut result, place, &direct);
+                    continue;
+                }
                 let inner = DMatrix::from_fn(volumes.len(), volumes.len(), |i, j| {
                     let (i, j) = (volumes[i], volumes[j]);
                     scale[i] * entry(i, j) * scale[j]
@@ -174,12 +179,16 @@ impl LinearSystem {
                 // D = Z_δδ − Z_δv Z_vv⁻¹ Z_vδ
                 direct - Matrix4::from_fn(|i, j| (across.transpose() * &solved)[(i, j)])
             };
-            for i in 0..4 {
-                for j in 0..4 {
-                    result[(i, j, place)] = d[(i, j)];
-                }
-            }
+            write(&mut result, place, &d);
         }
         Ok(result)
+    }
+}
+
+fn write(result: &mut Array3<Complex64>, place: usize, matrix: &Matrix4<Complex64>) {
+    for i in 0..4 {
+        for j in 0..4 {
+            result[(i, j, place)] = matrix[(i, j)];
+        }
     }
 }

@@ -1,10 +1,11 @@
 //! Changing numbers by path.
 
+use std::collections::HashMap;
+
 use serde_json::Value;
 
-use super::structure::kind_is_number;
-use super::{Vehicle, is_optional};
-use crate::error::{Result, Violation, refuse};
+use super::{Vehicle, is_optional, rules};
+use crate::error::{Error, Result, Violation, refuse};
 use crate::spec::{Described, Field, Kind, Schema, Spec, Tree, expand, number};
 
 /// `front.both.x` as the paths of its two sides.
@@ -14,92 +15,160 @@ pub(super) fn sides(path: &str) -> Option<(String, String)> {
     Some((format!("{axle}.left.{rest}"), format!("{axle}.right.{rest}")))
 }
 
+/// Where a path leads in a vehicle.
+enum Target {
+    /// To a slot as the file gives it.
+    Given(usize),
+    /// To members of groups, or to a number that the file leaves out.
+    Inner(&'static Field),
+    /// To both sides of a pair that is given side by side.
+    Sides(usize, usize),
+}
+
 pub(super) fn apply(vehicle: &Vehicle, changes: &[(String, Value)]) -> Result<Vehicle> {
     let structure = vehicle.structure();
     let atmosphere = structure.readable.get("atmosphere").map_or(f64::NAN, |&slot| vehicle.numbers()[slot]);
-    let mut violations = Vec::new();
+    let mut violations = overlaps(vehicle, changes);
     let mut numbers = vehicle.numbers().to_vec();
-    let mut owner: Vec<Option<&str>> = vec![None; numbers.len()];
-    // Changes that the structure cannot take as it is: a side of a pair, an optional number.
+    // Changes that the structure cannot take as it is.
     let mut regroup = false;
     for (path, value) in changes {
-        let pair = sides(path);
-        let targets: Vec<usize> = match (structure.readable.get(path), &pair) {
-            (Some(&slot), _) => {
-                regroup |= structure.parameters[slot].path != *path;
-                vec![slot]
-            }
-            (None, Some((left, right))) => {
-                [left, right].into_iter().filter_map(|side| structure.readable.get(side).copied()).collect()
-            }
-            (None, None) => Vec::new(),
-        };
-        if targets.is_empty() {
-            match optional_field(vehicle, path) {
-                Some(field) => {
-                    regroup = true;
-                    violations.extend(number(field, path, value, atmosphere).err());
-                }
-                None => violations.push(structure.unknown_path(path)),
-            }
+        let Some(target) = target(vehicle, path) else {
+            violations.push(structure.unknown_path(path));
             continue;
-        }
-        for slot in targets {
-            match number(structure.parameters[slot].field, path, value, atmosphere) {
-                Ok(value) => numbers[slot] = value,
-                Err(violation) => {
-                    violations.push(violation);
-                    break;
-                }
+        };
+        let (field, slots) = match target {
+            Target::Given(slot) => (structure.parameters[slot].field, vec![slot]),
+            Target::Sides(left, right) => (structure.parameters[left].field, vec![left, right]),
+            Target::Inner(field) => {
+                regroup = true;
+                (field, Vec::new())
             }
-            let both_sides_of_one = owner[slot].is_some_and(|other| regroup && is_other_side(other, path));
-            match owner[slot] {
-                Some(other) if !both_sides_of_one => violations.push(
-                    Violation::new(path, "", format!("sets the same number as {other}")).hint("give one of them"),
-                ),
-                _ => owner[slot] = Some(path),
-            }
+        };
+        let value = number(field, path, value, atmosphere).unwrap_or_else(|violation| {
+            violations.push(violation);
+            f64::NAN
+        });
+        for slot in slots {
+            numbers[slot] = value;
         }
     }
-    refuse(violations)?;
     if !regroup {
-        return vehicle.with_numbers(numbers);
+        // What could not be read is NaN and breaks no rule again.
+        violations.extend(rules::check(&structure.spec, &structure.parameters, &numbers));
+        refuse(violations)?;
+        return Ok(vehicle.with_checked_numbers(numbers));
     }
-    let mut tree = structure.filled(vehicle.numbers());
-    for (path, value) in changes {
-        // A text is turned to SI where it is read again.
-        set(&mut tree, path, value.clone());
+    let regrouped = Vehicle::from_tree(&regrouped(vehicle, changes));
+    match regrouped {
+        Ok(vehicle) if violations.is_empty() => Ok(vehicle),
+        Ok(_) => Err(Error::InvalidInput { violations }),
+        Err(Error::InvalidInput { violations: more }) => {
+            let known: Vec<String> = violations.iter().map(|violation| violation.path.clone()).collect();
+            violations.extend(more.into_iter().filter(|violation| !known.contains(&violation.path)));
+            refuse(violations)?;
+            Ok(vehicle.clone())
+        }
+        Err(other) => Err(other),
     }
-    Vehicle::from_tree(&tree)
 }
 
-// `front.left.x` and `front.right.x` are one number only until the pair is split, and so are two
-// circuits of a layout.
-fn is_other_side(a: &str, b: &str) -> bool {
-    a != b && !a.contains(".both.") && !b.contains(".both.") && !a.starts_with("layout.") && !b.starts_with("layout.")
+fn target(vehicle: &Vehicle, path: &str) -> Option<Target> {
+    let structure = vehicle.structure();
+    let slot = |path: &str| structure.readable.get(path).copied();
+    if let Some(slot) = slot(path) {
+        let parameter = &structure.parameters[slot];
+        return Some(if parameter.path == path { Target::Given(slot) } else { Target::Inner(parameter.field) });
+    }
+    let given = structure.filled(vehicle.numbers());
+    let expanded = expand(&given);
+    let optional = |path: &str| {
+        field_at(&given, Spec::<f64>::SCHEMA, path)
+            .or_else(|| field_at(&expanded, Spec::<f64>::SCHEMA, path))
+            .filter(|field| is_optional(&field.kind))
+    };
+    match sides(path) {
+        Some((left, right)) => match (slot(&left), slot(&right)) {
+            (Some(left), Some(right)) => Some(Target::Sides(left, right)),
+            // A part that one side lacks is not half set.
+            _ => optional(&left).and(optional(&right)).map(Target::Inner),
+        },
+        None => optional(path).map(Target::Inner),
+    }
 }
 
-// A number that the file leaves out but could give: its table is there.
-fn optional_field(vehicle: &Vehicle, path: &str) -> Option<&'static Field> {
-    let given = vehicle.structure().filled(vehicle.numbers());
-    let find = |path: &str, tree: &Tree| field_at(tree, Spec::<f64>::SCHEMA, path);
-    find(path, &given)
-        .or_else(|| find(path, &expand(&given)))
-        .or_else(|| find(&sides(path)?.0, &given))
-        .filter(|field| is_optional(&field.kind))
+// Paths that lead to the same number. A pair is its two sides, a layout its circuits.
+fn overlaps(vehicle: &Vehicle, changes: &[(String, Value)]) -> Vec<Violation> {
+    let structure = vehicle.structure();
+    let mut owner: HashMap<String, &str> = HashMap::new();
+    let mut violations = Vec::new();
+    for (path, _) in changes {
+        let mut leaves = match sides(path) {
+            Some((left, right)) => vec![left, right],
+            None => vec![path.clone()],
+        };
+        if path.starts_with("layout.")
+            && let Some(slot) = structure.readable.get(path)
+        {
+            leaves.extend(structure.members(*slot).map(str::to_owned));
+        }
+        let taken = leaves.iter().find_map(|leaf| owner.get(leaf).copied());
+        if let Some(other) = taken {
+            violations
+                .push(Violation::new(path, "", format!("sets the same number as {other}")).hint("give one of them"));
+        }
+        for leaf in leaves {
+            owner.insert(leaf, path);
+        }
+    }
+    violations
 }
 
 fn field_at(tree: &Tree, schema: &'static Schema, path: &str) -> Option<&'static Field> {
     let (head, rest) = path.split_once('.').unwrap_or((path, ""));
     let field = schema.fields.iter().find(|field| field.name == head)?;
     match &field.kind {
-        kind if kind_is_number(kind) => rest.is_empty().then_some(field),
+        Kind::Number { .. } => rest.is_empty().then_some(field),
         Kind::Table { schema, .. } => field_at(tree.get(head)?.as_object()?, schema, rest),
         Kind::Named { schema } => {
             let (name, rest) = rest.split_once('.')?;
             field_at(tree.get(head)?.as_object()?.get(name)?.as_object()?, schema, rest)
         }
         _ => None,
+    }
+}
+
+// The raw tree with the changes, the groups split that they reach into. What the file gives as it is comes
+// first: a group that is split later takes it along.
+fn regrouped(vehicle: &Vehicle, changes: &[(String, Value)]) -> Tree {
+    let structure = vehicle.structure();
+    let mut tree = structure.filled(vehicle.numbers());
+    let inner = |path: &str| matches!(target(vehicle, path), Some(Target::Inner(_)));
+    let (inner, given): (Vec<_>, Vec<_>) = changes.iter().partition(|(path, _)| inner(path));
+    for (path, value) in given.into_iter().chain(inner) {
+        set(&mut tree, path, value.clone());
+    }
+    if structure.given.contains_key("layout") && !tree.contains_key("layout") {
+        move_settings(vehicle, &mut tree);
+    }
+    tree
+}
+
+// Settings that speak of a layout speak of its circuits once it is split.
+fn move_settings(vehicle: &Vehicle, tree: &mut Tree) {
+    let structure = vehicle.structure();
+    let Some(Value::Object(settings)) = tree.get_mut("settings") else { return };
+    for set in settings.values_mut().filter_map(Value::as_object_mut) {
+        let moved: Vec<(String, Value)> =
+            set.iter().filter(|(path, _)| path.starts_with("layout.")).map(|(k, v)| (k.clone(), v.clone())).collect();
+        for (path, value) in moved {
+            set.remove(&path);
+            if let Some(&slot) = structure.readable.get(&path) {
+                for member in structure.members(slot) {
+                    set.insert(member.to_owned(), value.clone());
+                }
+            }
+        }
     }
 }
 

@@ -10,7 +10,7 @@ use crate::axes::CORNERS;
 use crate::error::{Result, Violation, refuse};
 use crate::hydraulics::Network;
 use crate::spec::{
-    Described, Kind, Parameter, Slot, Spec, Tree, describe, expand, fill, join, nearest, number, read_tree, walk,
+    Described, Parameter, Slot, Spec, Tree, describe, expand, fill, join, nearest, number, read_tree, walk,
 };
 
 /// Elements, nodes, lines, names: everything of a vehicle but its numbers.
@@ -68,6 +68,14 @@ impl Structure {
         let mut known: Vec<&str> = self.readable.keys().map(String::as_str).collect();
         known.sort_unstable();
         Violation::new(path, "", "no such path").hint(nearest(path, known.into_iter()))
+    }
+
+    /// Paths in circuits that share a slot.
+    pub(crate) fn members(&self, slot: usize) -> impl Iterator<Item = &str> {
+        self.readable
+            .iter()
+            .filter(move |(path, other)| **other == slot && path.starts_with("circuits."))
+            .map(|(path, _)| path.as_str())
     }
 
     /// The file's tree with numbers in SI.
@@ -201,9 +209,4 @@ fn flatten(set: &Tree) -> BTreeMap<String, Value> {
         }
     }
     flat
-}
-
-// A slot is a number whose kind says so.
-pub(super) fn kind_is_number(kind: &Kind) -> bool {
-    matches!(kind, Kind::Number { .. })
 }
