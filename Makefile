@@ -31,6 +31,10 @@ DEVELOP := $(BIN)/maturin develop --release --locked
 COMPILE := $(UV) pip compile --quiet --universal --python-version 3.11 --generate-hashes --no-annotate \
 	--no-emit-index-url --no-emit-find-links --custom-compile-command 'make lock' $(LOCKFLAGS)
 
+STUB := python/ridemodes/_core.pyi
+GENERATE_STUB = $(DEVELOP) --generate-stubs >$(BUILD_LOG) 2>&1 || { cat $(BUILD_LOG) >&2; exit 1; }; \
+	$(BIN)/python python/stub_imports.py $(STUB)
+
 .PHONY: demo test bench stub lock lint clean
 .NOTPARALLEL:
 .DELETE_ON_ERROR:
@@ -47,19 +51,21 @@ test: $(BUILT) $(TEST)
 	@$(BIN)/python -m pytest --quiet --nbmake notebooks
 	@echo 'Python: types'
 	@$(BIN)/python -m mypy --strict python/ridemodes
-	@echo 'Python: stub against the built extension'
+	@echo 'Python: stub against the built extension and as generated'
 	@$(BIN)/python -m mypy.stubtest --mypy-config-file pyproject.toml ridemodes._core
+	@cp $(STUB) $(VENV)/committed.pyi
+	@$(GENERATE_STUB)
+	@cmp -s $(STUB) $(VENV)/committed.pyi || { echo 'The stub has changed: run make stub and commit it' >&2; exit 1; }
 
 bench: $(BUILT)
 	@echo 'Rust: benchmarks'
-	@cargo bench --locked --quiet -p ridemodes
+	@cargo bench --locked --quiet -p ridemodes --bench stages
 	@echo 'Python: benchmarks'
 	@$(BIN)/python python/benches/speed.py
 
 stub: $(DEMO)
 	@echo 'Rewriting python/ridemodes/_core.pyi'
-	@$(DEVELOP) --generate-stubs >$(BUILD_LOG) 2>&1 || { cat $(BUILD_LOG) >&2; exit 1; }
-	@$(BIN)/python python/stub_imports.py python/ridemodes/_core.pyi
+	@$(GENERATE_STUB)
 	@touch $(BUILT)
 
 # For maintainers, with uv installed. `make lock LOCKFLAGS=--upgrade` takes the newest versions.

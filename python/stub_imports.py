@@ -6,7 +6,8 @@ The generator writes such annotations out as they are: usage `python stub_import
 import sys
 from pathlib import Path
 
-IMPORTS = "import collections.abc\nimport numpy\nimport numpy.typing\nimport pandas\nimport xarray\n"
+MODULES = ("collections.abc", "numpy", "numpy.typing", "pandas", "xarray")
+IMPORTS = "".join(f"import {module}\n" for module in MODULES)
 
 
 def main(stub: Path) -> None:

@@ -1,7 +1,8 @@
-"""What a call from Python costs, beside the plain NumPy/SciPy script of the same work, in one run.
+"""What a call from Python costs, beside the plain NumPy/SciPy script of the same work.
 
-The script starts from the finished matrices, so that its share is the least it could need: the state matrix,
-`scipy.linalg.eig` with vectors, undamped modes by `eigh`, and kinetic, strain and dissipation shares in NumPy.
+Both in one run. The script starts from the finished matrices, so that its share is the least it
+could need: the state matrix, `scipy.linalg.eig` with vectors, undamped modes by `eigh`, and
+kinetic, strain and dissipation shares in NumPy.
 """
 
 import subprocess
@@ -9,8 +10,9 @@ import sys
 import timeit
 
 import numpy as np
-import ridemodes as rm
 import scipy.linalg
+
+import ridemodes as rm
 
 
 def best(call, number=200, repeat=7):
@@ -67,7 +69,10 @@ def main():
         lin.damping,
         lin.stiffness,
         np.array([e.row for e in elements]),
-        *(np.array([getattr(e, name) for e in elements]) for name in ("mass", "damping", "stiffness")),
+        *(
+            np.array([getattr(e, name) for e in elements])
+            for name in ("mass", "damping", "stiffness")
+        ),
         pattern,
     )
     value = {"front.both.spring.rate": 24e3}

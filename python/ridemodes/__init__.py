@@ -6,12 +6,12 @@ A vehicle is read from a file, settled at its operating point, linearised and so
     lin = car.settle().linear()
     lin.modes(), lin.motions(), lin.coupling
 
-Everything is SI, pressures are absolute, axes are those of ISO 8855, and corners come in the order front
-left, front right, rear left, rear right.
+Everything is SI, pressures are absolute, axes are those of ISO 8855, and corners come in the order
+front left, front right, rear left, rear right.
 
-Results are for engineering judgement, not a release to the road: a vehicle with changed suspension is proven
-by test, under local rules and by qualified people. Pressurised accumulators can injure; charge and service
-them by their maker's instructions.
+Results are for engineering judgement, not a release to the road: a vehicle with changed suspension
+is proven by test, under local rules and by qualified people. Pressurised accumulators can injure;
+charge and service them by their maker's instructions.
 """
 
 from typing import TYPE_CHECKING, Any
@@ -65,7 +65,7 @@ __all__ = [
 
 
 def __getattr__(name: str) -> Any:
-    # Reading the metadata and importing matplotlib take longer than all the rest: only when asked for.
+    # Reading the metadata and importing matplotlib take longer than all the rest.
     if name == "__version__":
         from importlib.metadata import version
 

@@ -56,8 +56,18 @@ def modes_to_xarray(modes: Modes) -> xarray.Dataset:
             "unclear": (mode, modes.unclear, "1", "label is a near tie"),
             "shape": (("mode", "coordinate"), modes.shape, "1", "mode shape"),
             "share": (("mode", "part"), modes.share, "1", "share of kinetic energy"),
-            "motion_share": (("mode", "motion"), modes.motion_share, "1", "share of kinetic energy"),
-            "strain_share": (("mode", "element"), modes.strain_share, "1", "share of strain energy"),
+            "motion_share": (
+                ("mode", "motion"),
+                modes.motion_share,
+                "1",
+                "share of kinetic energy",
+            ),
+            "strain_share": (
+                ("mode", "element"),
+                modes.strain_share,
+                "1",
+                "share of strain energy",
+            ),
             "dissipation_share": (
                 ("mode", "element"),
                 modes.dissipation_share,
@@ -164,7 +174,7 @@ def linear_to_xarray(linear: LinearSystem) -> xarray.Dataset:
             "stiffness": (square, linear.stiffness, entry, "stiffness"),
             "road_stiffness": (road, linear.road_stiffness, entry, "force per road height"),
             "road_damping": (road, linear.road_damping, entry, "force per road velocity"),
-            "coordinate_unit": (("coordinate",), linear.coordinate_units, "1", "unit of coordinate"),
+            "coordinate_unit": (("coordinate",), linear.coordinate_units, "1", "coordinate unit"),
             "coupling": (("corner", "corner_"), linear.coupling, "N/m", "coupling of the oil"),
         },
         {

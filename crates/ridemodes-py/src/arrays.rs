@@ -41,6 +41,21 @@ array_type!(Complex, "An array of complex numbers.", "numpy", "complex128");
 array_type!(Flags, "An array of truth values.", "numpy", "bool_");
 array_type!(Names, "An array of names.", "numpy", "str_");
 
+/// An iterator over arrays of real numbers.
+pub(crate) struct Reals<'py>(pub Bound<'py, PyAny>);
+
+impl<'py> IntoPyObject<'py> for Reals<'py> {
+    type Target = PyAny;
+    type Output = Bound<'py, PyAny>;
+    type Error = std::convert::Infallible;
+    const OUTPUT_TYPE: PyStaticExpr =
+        type_hint_subscript!(type_hint_identifier!("collections.abc", "Iterator"), <Real<'py>>::OUTPUT_TYPE);
+
+    fn into_pyobject(self, _: Python<'py>) -> Result<Self::Output, Self::Error> {
+        Ok(self.0)
+    }
+}
+
 /// An array that is made at first access and then handed out again.
 pub(crate) struct Kept(PyOnceLock<Py<PyAny>>);
 

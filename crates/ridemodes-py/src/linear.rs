@@ -4,7 +4,7 @@ use pyo3::exceptions::{PyIndexError, PyValueError};
 use pyo3::prelude::*;
 use ridemodes::{LinearSystem as Core, ModeKind};
 
-use crate::arrays::{Complex, Kept, Real, matrix, read_only, vector};
+use crate::arrays::{Complex, Kept, Real, Reals, matrix, read_only, vector};
 use crate::convert::frequencies;
 use crate::errors::{labelled, raise};
 use crate::modes::Modes;
@@ -383,8 +383,8 @@ result_class! {
         }
     }
 
-    fn __iter__<'py>(&self, py: Python<'py>) -> PyResult<Bound<'py, pyo3::types::PyIterator>> {
+    fn __iter__<'py>(&self, py: Python<'py>) -> PyResult<Reals<'py>> {
         let parts = (0..4).map(|part| self.part(py, part)).collect::<PyResult<Vec<_>>>()?;
-        pyo3::types::PyTuple::new(py, parts)?.try_iter()
+        Ok(Reals(pyo3::types::PyTuple::new(py, parts)?.try_iter()?.into_any()))
     }
 }

@@ -140,10 +140,10 @@ fn rigid_oil_is_the_limit_of_stiff_oil() {
         assert!(rigid.coordinates().len() < stiff.coordinates().len());
         assert!(!rigid.elements().iter().any(|e| e.kind == ElementKind::Oil && e.stiffness != 0.0));
         let coupling = rigid.coupling().unwrap();
-        assert!(largest(&(coupling - stiff.coupling().unwrap())) <= 1e-5 * largest(&coupling), "{kind}");
+        assert!(largest(&(coupling - stiff.coupling().unwrap())) <= 1e-4 * largest(&coupling), "{kind}");
         let [a, b] = [&rigid, &stiff].map(|lin| lin.dynamic_coupling(&[0.5, 4.0, 25.0]).unwrap());
         for place in 0..3 {
-            assert!(worst(&(at(&a, place) - at(&b, place))) <= 1e-5 * worst(&at(&a, place)), "{kind}");
+            assert!(worst(&(at(&a, place) - at(&b, place))) <= 1e-4 * worst(&at(&a, place)), "{kind}");
         }
         let [a, b] = [&rigid, &stiff].map(|lin| lin.modes().unwrap());
         for label in ["body heave", "body pitch", "body roll", "wheel heave", "wheel pitch", "wheel roll", "wheel warp"] {

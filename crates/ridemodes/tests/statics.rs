@@ -15,7 +15,7 @@ proptest! {
 
     // JᵀF = [m g, 0, 0] and the warp preload (F_FL − F_FR − F_RL + F_RR)/4.
     #[test]
-    fn loads_balance_the_body(car in cars(ANY), preload in -300.0..300.0) {
+    fn loads_balance_the_body(car in cars(ANY), preload in -300.0_f64..300.0) {
         let mut car = car;
         set(&mut car, "body.warp_preload", preload);
         let point = vehicle(&car).settle().unwrap();

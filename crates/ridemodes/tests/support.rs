@@ -76,10 +76,11 @@ pub(crate) fn violations<T: std::fmt::Debug>(result: Result<T, Error>) -> Vec<Vi
 }
 
 /// Free motion or locked chamber that a result names.
-pub(crate) fn singular<T: std::fmt::Debug>(result: Result<T, Error>) -> String {
+pub(crate) fn singular<T>(result: Result<T, Error>) -> String {
     match result {
         Err(Error::Singular { matrix, motion }) => format!("{matrix}: {motion}"),
-        other => panic!("not Singular: {other:?}"),
+        Err(other) => panic!("{other}"),
+        Ok(_) => panic!("not an error"),
     }
 }
 

@@ -1,0 +1,37 @@
+"""The README's Python prints what its comments say."""
+
+import contextlib
+import io
+import re
+from pathlib import Path
+
+import ridemodes as rm
+
+README = (Path(__file__).parent.parent / "README.md").read_text(encoding="utf-8")
+
+
+def test_python_block_prints_its_comments():
+    [code] = re.findall(r"```python\n(.*?)```", README, re.DOTALL)
+    expected = re.findall(r"print\(.*\)\s+# (.*)", code)
+    printed = io.StringIO()
+    with contextlib.redirect_stdout(printed):
+        exec(code, {})
+    assert printed.getvalue().splitlines() == [line.strip() for line in expected]
+    assert len(expected) == 3
+
+
+def test_table_is_the_printed_one():
+    printed = str(rm.example("roadster").settle().linear().modes()).splitlines()
+    [table] = re.findall(r"(    Modes \(damped\)\n(?:    .*\n)+)", README)
+    shown = [line[4:] for line in table.splitlines() if "…" not in line]
+    assert shown == printed[: len(shown)]
+
+
+def test_file_section_is_of_the_example():
+    [given] = re.findall(r"```toml\n(.*?)```", README, re.DOTALL)
+    car = rm.example("roadster").to_dict()
+    import tomllib
+
+    for table, values in tomllib.loads(given).items():
+        assert table in car
+        assert set(values) <= set(car[table]), table
