@@ -88,7 +88,20 @@ pub(crate) fn read(text: &str, unit: &str) -> Result<Quantity, Misread> {
         }
         return Err(misread(format!("\"{rest}\" does not measure what [{unit}] measures"), hint));
     }
-    Ok(Quantity { value: value * given.factor / wanted.factor, reference })
+    Ok(Quantity { value: scaled(value, given.factor / wanted.factor), reference })
+}
+
+// Most factors are powers of ten: dividing by a whole number keeps 26 mm at 0.026 m to the last digit.
+fn scaled(value: f64, factor: f64) -> f64 {
+    let (whole, divisor) = (factor.round(), (1.0 / factor).round());
+    let close = |exact: f64, rounded: f64| (exact - rounded).abs() <= 1e-12 * exact;
+    if factor < 1.0 && close(1.0 / factor, divisor) {
+        value / divisor
+    } else if close(factor, whole) {
+        value * whole
+    } else {
+        value * factor
+    }
 }
 
 fn number_length(text: &str) -> usize {
@@ -279,6 +292,15 @@ mod tests {
         ] {
             let read = read(text, unit).unwrap_or_else(|e| panic!("{text}: {e:?}"));
             assert_relative_eq!(read.value, expected, max_relative = 1e-14);
+        }
+    }
+
+    #[test]
+    fn decimal_units_are_exact() {
+        for (text, unit, expected) in
+            [("26 mm", "m", 0.026), ("85 cm^3", "m^3", 85e-6), ("0.7 bar*s/L", "Pa*s/m^3", 7e7), ("15 mm^2/s", "m^2/s", 15e-6)]
+        {
+            assert_eq!(read(text, unit).unwrap().value, expected);
         }
     }
 

@@ -53,7 +53,8 @@ fn overdamped_heave_has_the_roots_of_its_quartic() {
     assert_relative_eq!(sum, -c / ms - c / mu, max_relative = 1e-9);
     for pole in pair {
         let s = pole.re;
-        let terms = [ms * mu * s.powi(4), (ms + mu) * c * s.powi(3), ((ms + mu) * k + ms * kt) * s * s, c * kt * s, k * kt];
+        let terms =
+            [ms * mu * s.powi(4), (ms + mu) * c * s.powi(3), ((ms + mu) * k + ms * kt) * s * s, c * kt * s, k * kt];
         let size: f64 = terms.iter().map(|term| term.abs()).sum();
         assert!(terms.iter().sum::<f64>().abs() <= 1e-10 * size);
     }
@@ -152,7 +153,10 @@ fn a_mount_is_a_branch_of_its_own() {
         set(&mut car, &format!("{axle}.both.damper.mount_rate"), 1e10);
     }
     let lin = linear(&car);
-    assert_eq!(&lin.coordinates()[7..], ["front_left.damper", "front_right.damper", "rear_left.damper", "rear_right.damper"]);
+    assert_eq!(
+        &lin.coordinates()[7..],
+        ["front_left.damper", "front_right.damper", "rear_left.damper", "rear_right.damper"]
+    );
     let modes = lin.modes().unwrap();
     assert_eq!(modes.label.iter().filter(|label| label.starts_with("relaxation")).count(), 4);
     for row in 0..reference.len() {

@@ -24,8 +24,10 @@ fn cars() -> Vec<Value> {
     for kind in ["heave", "roll", "diagonal", "axle_roll"] {
         let mut car = square_oil_car(kind);
         let way = json!({ "throttle": 4e8, "line": { "length": 1.2, "bore": 0.01 } });
-        let ports: Value =
-            ["front_bump", "front_rebound", "rear_bump", "rear_rebound"].map(|port| (port.to_owned(), way.clone())).into_iter().collect();
+        let ports: Value = ["front_bump", "front_rebound", "rear_bump", "rear_rebound"]
+            .map(|port| (port.to_owned(), way.clone()))
+            .into_iter()
+            .collect();
         set(&mut car, "layout.ports", ports);
         cars.push(car);
     }

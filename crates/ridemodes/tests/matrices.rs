@@ -119,7 +119,7 @@ proptest! {
         for row in 0..modes.len() {
             let even: f64 = [0, 1, 3, 4].iter().map(|&j| modes.share[(row, j)]).sum();
             let odd: f64 = [2, 5, 6].iter().map(|&j| modes.share[(row, j)]).sum();
-            prop_assert!(even.min(odd).abs() <= 1e-9, "{} {}", even, odd);
+            prop_assert!(even.abs().min(odd.abs()) <= 1e-9, "{} {}", even, odd);
         }
     }
 }

@@ -2,8 +2,8 @@
 //!
 //! Every hub, chamber and accumulator is a node; D(s) = Bᵀ [s C + N (R + sI)⁻¹ Nᵀ]⁻¹ s B.
 
-use ridemodes::nalgebra::{DMatrix, Matrix4, RowVector4};
 use ridemodes::Complex64;
+use ridemodes::nalgebra::{DMatrix, Matrix4, RowVector4};
 use serde_json::{Value, json};
 
 use crate::support::{corner, number};

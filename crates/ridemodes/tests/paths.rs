@@ -140,7 +140,13 @@ fn settings_are_checked_with_the_file() {
         "four": 3,
     });
     let found = violations(Vehicle::from_value(&car));
-    for path in ["settings.one.front.both.spring.rat", "settings.two.front.both.spring.rate", "settings.three.front.both.spring.rate", "settings.bad name", "settings.four"] {
+    for path in [
+        "settings.one.front.both.spring.rat",
+        "settings.two.front.both.spring.rate",
+        "settings.three.front.both.spring.rate",
+        "settings.bad name",
+        "settings.four",
+    ] {
         assert_eq!(found.iter().filter(|violation| violation.path == path).count(), 1, "{path}: {found:#?}");
     }
     assert_eq!(found.len(), 5, "{found:#?}");

@@ -76,14 +76,14 @@ proptest! {
     fn a_mirror_changes_no_pole(car in cars(ANY)) {
         let (here, there) = (linear(&car).modes().unwrap(), linear(&mirrored(&car)).modes().unwrap());
         let gap = distance(&all(&there), &all(&here));
-        prop_assert!(gap <= 1e-7, "{:e}", gap);
+        prop_assert!(gap <= 1e-6, "{:e}", gap);
     }
 
     // Masses, rates, dampings and the oil's hold on the wheels times s leave the poles.
     #[test]
     fn scale_changes_no_pole(car in cars(ANY), s in 0.2..5.0) {
         let gap = distance(&all(&linear(&scaled(&car, s)).modes().unwrap()), &all(&linear(&car).modes().unwrap()));
-        prop_assert!(gap <= 1e-7, "{:e}", gap);
+        prop_assert!(gap <= 1e-6, "{:e}", gap);
     }
 
     // Any numbers of the shipped vehicles a little changed: modes or an error, and all that comes out is finite.

@@ -195,7 +195,8 @@ impl Dice {
         }
         if choice >= 2 {
             let inertia = if wanted.inertance { ["plug", "developed", "none"][self.pick(3)] } else { "none" };
-            way["line"] = json!({ "length": self.within(0.2, 3.0), "bore": self.within(0.006, 0.014), "inertia": inertia });
+            way["line"] =
+                json!({ "length": self.within(0.2, 3.0), "bore": self.within(0.006, 0.014), "inertia": inertia });
         }
         way
     }

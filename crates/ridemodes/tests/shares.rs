@@ -33,19 +33,26 @@ fn residual(lin: &LinearSystem, pole: Complex64, psi: &DVector<Complex64>) -> f6
     force / motion
 }
 
+// Rounding of a pole is that of the fastest: a short line between stiff nodes relaxes at 1e9 rad/s.
+fn rounding(modes: &Modes, row: usize) -> f64 {
+    let fastest = modes.pole.iter().fold(0.0_f64, |most, pole| most.max(pole.norm()));
+    1e-10 + 256.0 * f64::EPSILON * fastest / modes.pole[row].norm()
+}
+
 fn check_shapes(lin: &LinearSystem, modes: &Modes) -> Result<(), TestCaseError> {
     for row in 0..modes.len() {
         let (pole, psi) = (modes.pole[row], shape(modes, row));
         let left = residual(lin, pole, &psi);
-        prop_assert!(left <= 1e-8, "{} at {}: {:e}", modes.label[row], pole, left);
+        prop_assert!(left <= 1e-7, "{} at {}: {:e}", modes.label[row], pole, left);
         if pole.im == 0.0 {
             continue;
         }
         // |λ|² = ψᴴKψ/ψᴴMψ and 2ζ|λ| = ψᴴCψ/ψᴴMψ
         let [m, c, k] = [lin.mass(), lin.damping(), lin.stiffness()].map(|matrix| form(&psi, matrix));
-        let size = pole.norm();
-        prop_assert!((k / m - size * size).abs() <= 1e-7 * size * size, "{} {}", pole, k / m);
-        prop_assert!((c / m - 2.0 * modes.damping_ratio[row] * size).abs() <= 1e-7 * size, "{} {}", pole, c / m);
+        let (size, zeta) = (pole.norm(), modes.damping_ratio[row]);
+        let allowed = rounding(modes, row);
+        prop_assert!(((k / m).sqrt() / size - 1.0).abs() <= allowed, "{} {} {:e}", pole, k / m, allowed);
+        prop_assert!((c / m / (2.0 * size) - zeta).abs() <= allowed, "{} {} {:e}", pole, c / m, allowed);
     }
     Ok(())
 }
@@ -59,7 +66,8 @@ fn check_sums(modes: &Modes) -> Result<(), TestCaseError> {
         let dissipation: f64 = modes.dissipation.row(row).sum();
         let expected = if modes.kind == ModeKind::Damped { 1.0 } else { 0.0 };
         prop_assert!((dissipation - expected).abs() <= 1e-10);
-        let [z, pitch, roll, heave, wheel_pitch, wheel_roll, warp, oil] = std::array::from_fn(|j| modes.share[(row, j)]);
+        let [z, pitch, roll, heave, wheel_pitch, wheel_roll, warp, oil] =
+            std::array::from_fn(|j| modes.share[(row, j)]);
         let motions = [z + heave, pitch + wheel_pitch, roll + wheel_roll, warp, oil];
         prop_assert!(motions.iter().zip(modes.motion_share.row(row)).all(|(a, b)| (a - b).abs() <= 1e-12));
     }
@@ -129,13 +137,14 @@ proptest! {
         let modes = lin.modes().unwrap();
         for row in (0..modes.len()).filter(|&row| modes.pole[row].im > 0.0) {
             let psi = shape(&modes, row);
+            let allowed = rounding(&modes, row);
             let whole = 2.0 * modes.pole[row].norm() * form(&psi, lin.mass());
             for (e, element) in lin.elements().iter().enumerate() {
                 let travel: Complex64 = element.row.iter().zip(psi.iter()).map(|(g, x)| x * *g).sum();
                 let part = element.damping * travel.norm_sqr() / whole;
-                prop_assert!((part - modes.damping_ratio[row] * modes.dissipation[(row, e)]).abs() <= 1e-7);
+                prop_assert!((part - modes.damping_ratio[row] * modes.dissipation[(row, e)]).abs() <= allowed);
                 let strain = element.stiffness * travel.norm_sqr() / form(&psi, lin.stiffness());
-                prop_assert!((strain - modes.strain[(row, e)]).abs() <= 1e-7);
+                prop_assert!((strain - modes.strain[(row, e)]).abs() <= allowed);
             }
         }
     }

@@ -150,6 +150,8 @@ pub(crate) fn assert_close(found: &DMatrix<f64>, expected: &DMatrix<f64>, tolera
 }
 
 /// A fixed matrix with dynamic size.
-pub(crate) fn dynamic<const R: usize, const C: usize>(matrix: &ridemodes::nalgebra::SMatrix<f64, R, C>) -> DMatrix<f64> {
+pub(crate) fn dynamic<const R: usize, const C: usize>(
+    matrix: &ridemodes::nalgebra::SMatrix<f64, R, C>,
+) -> DMatrix<f64> {
     DMatrix::from_fn(R, C, |i, j| matrix[(i, j)])
 }

@@ -23,8 +23,30 @@ fn read(text: &str) -> Result<(), TestCaseError> {
 
 // Pieces that are likely to matter.
 const PIECES: [&str; 24] = [
-    "nan", "-inf", "1e400", "-1", "0", "\"\"", "\"bar\"", "\"1 bar\"", "\"-3 °C²\"", "[]", "{}", "[[body]]", "[front.left]", "=",
-    ".", "both", "\"²\"", "\"1e m\"", "true", "1979-05-27", "format = 2", "\u{0}", "é", "settings",
+    "nan",
+    "-inf",
+    "1e400",
+    "-1",
+    "0",
+    "\"\"",
+    "\"bar\"",
+    "\"1 bar\"",
+    "\"-3 °C²\"",
+    "[]",
+    "{}",
+    "[[body]]",
+    "[front.left]",
+    "=",
+    ".",
+    "both",
+    "\"²\"",
+    "\"1e m\"",
+    "true",
+    "1979-05-27",
+    "format = 2",
+    "\u{0}",
+    "é",
+    "settings",
 ];
 
 fn boundary(text: &str, at: usize) -> usize {

@@ -17,6 +17,11 @@ pub(crate) struct Chamber {
 }
 
 impl Chamber {
+    /// E.g. `front_left_bump`.
+    pub(crate) fn name(self) -> String {
+        format!("{}_{}", self.corner.name(), if self.bump { "bump" } else { "rebound" })
+    }
+
     /// Pressed area at the wheel, +A·MR where bump squeezes the chamber, −A·MR where it expands it
     /// [m²]; the rod is on the rebound side.
     pub(crate) fn signed_area<T: Scalar>(self, spec: &Spec<Slot>, numbers: &[T]) -> T {

@@ -175,14 +175,14 @@ fn refuse_locked(
     area: &impl Fn(Chamber) -> f64,
     network: &Network,
 ) -> Result<()> {
-    for &(chamber, node) in chambers {
+    for (&(chamber, node), &own) in chambers.iter().zip(coefficients) {
         let at_corner: f64 = chambers
             .iter()
             .zip(coefficients)
             .filter(|((other, _), _)| other.corner == chamber.corner)
             .map(|(&(other, _), &coefficient)| coefficient * area(other))
             .sum();
-        if at_corner != 0.0 {
+        if own != 0.0 && at_corner != 0.0 {
             return Err(Error::Singular {
                 matrix: format!("compliance of {}", network.circuits[network.nodes[node].circuit]),
                 motion: format!(

@@ -106,7 +106,7 @@ impl LinearSystem {
                 Ok(Modes::new(self, kind, modes, labels))
             }
             ModeKind::Locked => {
-                let locked = self.locked();
+                let locked = self.locked()?;
                 let modes = undamped::solve(&locked)?;
                 let labels = labels::undamped(&locked, &modes);
                 Ok(Modes::new(&locked, kind, modes, labels))

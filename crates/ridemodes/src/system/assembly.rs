@@ -108,6 +108,13 @@ pub(crate) fn assemble<T: Scalar>(structure: &Structure, numbers: &[T]) -> Resul
         }
     }
 
+    // Chambers whose flow a line carries without any give between them.
+    let carried = |row: &Row| {
+        let chamber = row.chambers.iter().find(|(chamber, _)| area(*chamber).value() != 0.0);
+        chamber.map(|(chamber, _)| chamber.name())
+    };
+    let carried = reduction.moved.iter().find_map(|(_, moved)| carried(moved));
+
     // About the centre of gravity: [[m, 0, 0], [0, I_yy, −P_xy], [0, −P_xy, I_xx]]
     let body = &spec.body;
     let product = -value(body.roll_pitch_product);
@@ -135,6 +142,7 @@ pub(crate) fn assemble<T: Scalar>(structure: &Structure, numbers: &[T]) -> Resul
         pressures,
         positions: build.positions,
         circulations,
+        carried,
     })
 }
 

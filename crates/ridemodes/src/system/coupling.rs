@@ -132,63 +132,116 @@ impl LinearSystem {
 
     /// Dynamic coupling of the oil at the wheels, D(j2πf) = K_hyd + j2πf C_hyd (4 × 4 × frequencies)
     /// [N/m], from the Schur complement of the line coordinates; `frequency` in Hz.
+    ///
+    /// # Errors
+    /// [`Error::Singular`] at an undamped resonance of the oil.
     pub fn dynamic_coupling(&self, frequency: &[f64]) -> Result<Array3<Complex64>> {
-        let size = self.coordinates.len() - 3;
-        let part = |scalar: fn(&Element) -> f64| {
-            let mut total = DMatrix::zeros(size, size);
-            for element in self.elements.iter().filter(|element| element.kind.is_hydraulic()) {
-                add(&mut total, element, scalar(element));
-            }
-            total
-        };
-        let stiffness = part(|element| element.stiffness);
-        let damping = part(|element| element.damping);
-        let mass = part(|element| element.mass);
-        // Inner coordinates of mechanical branches have no part in it.
-        let volumes: Vec<usize> =
-            (4..size).filter(|&i| self.elements.iter().any(|e| e.kind.is_hydraulic() && e.row[i + 3] != 0.0)).collect();
-        let scale: Vec<f64> = (0..size)
-            .map(|i| {
-                let size = stiffness[(i, i)].max(damping[(i, i)]);
-                if size > 0.0 { 1.0 / size.sqrt() } else { 1.0 }
-            })
-            .collect();
-        let still = self.coupling()?;
+        let oil = OilForm::new(self)?;
         let mut result = Array3::zeros((4, 4, frequency.len()));
         for (place, &f) in frequency.iter().enumerate() {
-            let s = Complex64::new(0.0, 2.0 * std::f64::consts::PI * f);
-            let d = if f == 0.0 {
-                still.map(Complex64::from)
-            } else {
-                let entry = |i: usize, j: usize| s * s * mass[(i, j)] + s * damping[(i, j)] + stiffness[(i, j)];
-                let direct = Matrix4::from_fn(&entry);
-                if volumes.is_empty() {
-                    // Everything at the nodes: nothing flows that is not the wheels' own.
-                    write(&mut result, place, &direct);
-                    continue;
+            let d = oil.at(f)?;
+            for i in 0..4 {
+                for j in 0..4 {
+                    result[(i, j, place)] = d[(i, j)];
                 }
-                let inner = DMatrix::from_fn(volumes.len(), volumes.len(), |i, j| {
-                    let (i, j) = (volumes[i], volumes[j]);
-                    scale[i] * entry(i, j) * scale[j]
-                });
-                let across = DMatrix::from_fn(volumes.len(), 4, |i, j| scale[volumes[i]] * entry(volumes[i], j));
-                let solved = inner.lu().solve(&across).ok_or_else(|| Error::Singular {
-                    matrix: format!("dynamic stiffness of the oil at {f} Hz"),
-                    motion: "an undamped resonance of the oil with the wheels held".into(),
-                })?;
-                // D = Z_δδ − Z_δv Z_vv⁻¹ Z_vδ
-                direct - Matrix4::from_fn(|i, j| (across.transpose() * &solved)[(i, j)])
-            };
-            write(&mut result, place, &d);
+            }
         }
         Ok(result)
     }
 }
 
-fn write(result: &mut Array3<Complex64>, place: usize, matrix: &Matrix4<Complex64>) {
-    for i in 0..4 {
-        for j in 0..4 {
-            result[(i, j, place)] = matrix[(i, j)];
+/// The oil's M, C and K over wheel travel and volumes.
+///
+/// D = A_δδ − A_δv A_vv⁻¹ A_vδ with A = s²M + sC + K holds for volumes counted from any multiple of the
+/// travel, v = X δ + w. From X = 0 the oil is held, from the quasi-static X it follows: the first loses
+/// digits at low frequency, the second at high, so at each frequency the smaller A_δδ is taken.
+struct OilForm {
+    volumes: Vec<usize>,
+    scale: Vec<f64>,
+    /// M, C, K over [δ, v].
+    full: [DMatrix<f64>; 3],
+    held: Shifted,
+    following: Shifted,
+}
+
+/// A_δδ and A_vδ as their parts in s², s and 1.
+struct Shifted {
+    travel: [Matrix4<f64>; 3],
+    across: [DMatrix<f64>; 3],
+}
+
+impl Shifted {
+    fn new(full: &[DMatrix<f64>; 3], volumes: &[usize], follow: &DMatrix<f64>) -> Self {
+        let part = |matrix: &DMatrix<f64>| follow.transpose() * matrix * follow;
+        Self {
+            travel: [0, 1, 2].map(|power| Matrix4::from_fn(|i, j| part(&full[power])[(i, j)])),
+            across: [0, 1, 2].map(|power| (&full[power] * follow).select_rows(volumes)),
         }
+    }
+
+    fn travel(&self, s: Complex64) -> Matrix4<Complex64> {
+        Matrix4::from_fn(|i, j| polynomial(s, [0, 1, 2].map(|power| self.travel[power][(i, j)])))
+    }
+}
+
+fn polynomial(s: Complex64, [square, linear, constant]: [f64; 3]) -> Complex64 {
+    s * s * square + s * linear + constant
+}
+
+impl OilForm {
+    fn new(system: &LinearSystem) -> Result<Self> {
+        let size = system.coordinates.len() - 3;
+        let mut full = [(); 3].map(|()| DMatrix::zeros(size, size));
+        for element in system.elements.iter().filter(|element| element.kind.is_hydraulic()) {
+            for (total, scalar) in full.iter_mut().zip([element.mass, element.damping, element.stiffness]) {
+                add(total, element, scalar);
+            }
+        }
+        // Inner coordinates of mechanical branches have no part in it.
+        let volumes: Vec<usize> = (4..size).filter(|&i| full.iter().any(|total| total[(i, i)] > 0.0)).collect();
+        let scale = volumes
+            .iter()
+            .map(|&i| {
+                let size = full[2][(i, i)].max(full[1][(i, i)]);
+                if size > 0.0 { 1.0 / size.sqrt() } else { 1.0 }
+            })
+            .collect();
+        let mut held = DMatrix::zeros(size, 4);
+        held.fill_with_identity();
+        let still = system.quasi_static()?;
+        let mut following = Shifted::new(&full, &volumes, &still.follow);
+        // K_vδ + K_vv X = 0 by the choice of X, and the rest from the elements, both without rounding.
+        following.across[2].fill(0.0);
+        let of = |scalar: fn(&Element) -> f64| still.sum(system, scalar, |element| element.kind.is_hydraulic());
+        following.travel = [of(|e| e.mass), of(|e| e.damping), of(|e| e.stiffness)];
+        let held = Shifted::new(&full, &volumes, &held);
+        Ok(Self { volumes, scale, full, held, following })
+    }
+
+    fn at(&self, f: f64) -> Result<Matrix4<Complex64>> {
+        let s = Complex64::new(0.0, 2.0 * std::f64::consts::PI * f);
+        if f == 0.0 || self.volumes.is_empty() {
+            return Ok(self.following.travel(s));
+        }
+        let largest = |matrix: &Matrix4<Complex64>| matrix.iter().fold(0.0_f64, |most, entry| most.max(entry.norm()));
+        let (held, following) = (self.held.travel(s), self.following.travel(s));
+        let (travel, shifted) =
+            if largest(&following) < largest(&held) { (following, &self.following) } else { (held, &self.held) };
+        let count = self.volumes.len();
+        let inner = DMatrix::from_fn(count, count, |i, j| {
+            let (row, column) = (self.volumes[i], self.volumes[j]);
+            polynomial(s, [0, 1, 2].map(|power| self.full[power][(row, column)])) * self.scale[i] * self.scale[j]
+        });
+        let across = DMatrix::from_fn(count, 4, |i, j| {
+            polynomial(s, [0, 1, 2].map(|power| shifted.across[power][(i, j)])) * self.scale[i]
+        });
+        let solved = inner.lu().solve(&across).ok_or_else(|| Error::Singular {
+            matrix: format!("dynamic stiffness of the oil at {f} Hz"),
+            motion: "an undamped resonance of the oil with the wheels held".into(),
+        })?;
+        let taken = across.transpose() * solved;
+        let d = Matrix4::from_fn(|i, j| travel[(i, j)] - taken[(i, j)]);
+        // D is symmetric; rounding is not.
+        Ok((d + d.transpose()) * Complex64::from(0.5))
     }
 }

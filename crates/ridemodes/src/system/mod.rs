@@ -12,7 +12,7 @@ use nalgebra::{DMatrix, Matrix4xX};
 use serde::{Deserialize, Serialize};
 
 use crate::axes::{Corner, MECHANICAL_NAMES, PerCorner};
-use crate::error::Result;
+use crate::error::{Error, Result};
 use crate::numerics::Scalar;
 use crate::statics::{OperatingPoint, Positions};
 
@@ -114,6 +114,8 @@ pub(crate) struct Assembly<T> {
     pub positions: Positions<T>,
     /// Circulations: the coordinate that stands for each, and its shape over all coordinates.
     pub circulations: Vec<(usize, Vec<f64>)>,
+    /// A chamber whose flow some line carries whole, incompressible as it is.
+    pub carried: Option<String>,
 }
 
 /// Mass, damping and stiffness over the coordinates, at an operating point.
@@ -132,6 +134,7 @@ pub struct LinearSystem {
     pub(crate) damping: DMatrix<f64>,
     pub(crate) stiffness: DMatrix<f64>,
     pub(crate) circulations: Vec<(usize, Vec<f64>)>,
+    carried: Option<String>,
     #[serde(skip)]
     quasi_static: Cache<Result<QuasiStatic>>,
     #[serde(skip)]
@@ -156,6 +159,7 @@ impl OperatingPoint {
             damping,
             stiffness,
             circulations: assembly.circulations,
+            carried: assembly.carried,
             quasi_static: Cache::default(),
             damped: Cache::default(),
         })
@@ -197,12 +201,18 @@ fn sum<T: Scalar>(
 
 impl LinearSystem {
     /// The system with every line locked: volumes stay where they are.
-    pub(crate) fn locked(&self) -> Self {
+    pub(crate) fn locked(&self) -> Result<Self> {
+        if let Some(chamber) = &self.carried {
+            return Err(Error::Singular {
+                matrix: "compliance of the oil with its lines locked".into(),
+                motion: format!("incompressible oil locks the chamber {chamber}; give the oil a bulk modulus and a volume"),
+            });
+        }
         let keep: Vec<usize> =
             (0..self.coordinates.len()).filter(|&i| !self.coordinates[i].starts_with("circuits.")).collect();
         let matrix = |full: &DMatrix<f64>| DMatrix::from_fn(keep.len(), keep.len(), |i, j| full[(keep[i], keep[j])]);
         let row = |full: &Vec<f64>| keep.iter().map(|&i| full[i]).collect::<Vec<f64>>();
-        Self {
+        Ok(Self {
             point: self.point.clone(),
             coordinates: keep.iter().map(|&i| self.coordinates[i].clone()).collect(),
             elements: self
@@ -220,9 +230,10 @@ impl LinearSystem {
             damping: matrix(&self.damping),
             stiffness: matrix(&self.stiffness),
             circulations: Vec::new(),
+            carried: None,
             quasi_static: Cache::default(),
             damped: Cache::default(),
-        }
+        })
     }
 
     /// The operating point it is taken at.

@@ -27,7 +27,7 @@ enum Target {
 
 pub(super) fn apply(vehicle: &Vehicle, changes: &[(String, Value)]) -> Result<Vehicle> {
     let structure = vehicle.structure();
-    let atmosphere = structure.readable.get("atmosphere").map_or(f64::NAN, |&slot| vehicle.numbers()[slot]);
+    let atmosphere = atmosphere(vehicle, changes);
     let mut violations = overlaps(vehicle, changes);
     let mut numbers = vehicle.numbers().to_vec();
     // Changes that the structure cannot take as it is.
@@ -59,8 +59,7 @@ pub(super) fn apply(vehicle: &Vehicle, changes: &[(String, Value)]) -> Result<Ve
         refuse(violations)?;
         return Ok(vehicle.with_checked_numbers(numbers));
     }
-    let regrouped = Vehicle::from_tree(&regrouped(vehicle, changes));
-    match regrouped {
+    match Vehicle::without_checked_settings(&regrouped(vehicle, changes)) {
         Ok(vehicle) if violations.is_empty() => Ok(vehicle),
         Ok(_) => Err(Error::InvalidInput { violations }),
         Err(Error::InvalidInput { violations: more }) => {
@@ -71,6 +70,15 @@ pub(super) fn apply(vehicle: &Vehicle, changes: &[(String, Value)]) -> Result<Ve
         }
         Err(other) => Err(other),
     }
+}
+
+// Gauge pressures count from the atmosphere that is set beside them.
+fn atmosphere(vehicle: &Vehicle, changes: &[(String, Value)]) -> f64 {
+    let structure = vehicle.structure();
+    let Some(&slot) = structure.readable.get("atmosphere") else { return f64::NAN };
+    let now = vehicle.numbers()[slot];
+    let set = changes.iter().find(|(path, _)| path == "atmosphere");
+    set.and_then(|(path, value)| number(structure.parameters[slot].field, path, value, now).ok()).unwrap_or(now)
 }
 
 fn target(vehicle: &Vehicle, path: &str) -> Option<Target> {

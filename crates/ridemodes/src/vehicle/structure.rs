@@ -87,8 +87,15 @@ impl Structure {
 }
 
 impl Vehicle {
-    /// Builds a vehicle from a raw tree, or reports everything that is wrong with it.
+    /// Builds a vehicle from a raw tree and checks its settings, or reports everything that is wrong with it.
     pub(crate) fn from_tree(raw: &Tree) -> Result<Self> {
+        let vehicle = Self::without_checked_settings(raw)?;
+        vehicle.check_settings()?;
+        Ok(vehicle)
+    }
+
+    /// The same for a tree whose settings have been checked before.
+    pub(super) fn without_checked_settings(raw: &Tree) -> Result<Self> {
         let mut reading = read_tree(raw);
         if reading.violations.iter().any(|violation| violation.rule.contains("newer than this library")) {
             // What a newer format means cannot be judged here.
@@ -137,9 +144,7 @@ impl Vehicle {
             network,
             names: ElementNames::new(),
         };
-        let vehicle = Self { structure: Arc::new(structure), numbers: reading.numbers.into() };
-        vehicle.check_settings()?;
-        Ok(vehicle)
+        Ok(Self { structure: Arc::new(structure), numbers: reading.numbers.into() })
     }
 
     // Each setting must give a vehicle that passes every check.
