@@ -297,9 +297,12 @@ mod tests {
 
     #[test]
     fn decimal_units_are_exact() {
-        for (text, unit, expected) in
-            [("26 mm", "m", 0.026), ("85 cm^3", "m^3", 85e-6), ("0.7 bar*s/L", "Pa*s/m^3", 7e7), ("15 mm^2/s", "m^2/s", 15e-6)]
-        {
+        for (text, unit, expected) in [
+            ("26 mm", "m", 0.026),
+            ("85 cm^3", "m^3", 85e-6),
+            ("0.7 bar*s/L", "Pa*s/m^3", 7e7),
+            ("15 mm^2/s", "m^2/s", 15e-6),
+        ] {
             assert_eq!(read(text, unit).unwrap().value, expected);
         }
     }

@@ -36,7 +36,7 @@ fn residual(lin: &LinearSystem, pole: Complex64, psi: &DVector<Complex64>) -> f6
 // Rounding of a pole is that of the fastest: a short line between stiff nodes relaxes at 1e9 rad/s.
 fn rounding(modes: &Modes, row: usize) -> f64 {
     let fastest = modes.pole.iter().fold(0.0_f64, |most, pole| most.max(pole.norm()));
-    1e-10 + 256.0 * f64::EPSILON * fastest / modes.pole[row].norm()
+    1e-8 + 1024.0 * f64::EPSILON * fastest / modes.pole[row].norm()
 }
 
 fn check_shapes(lin: &LinearSystem, modes: &Modes) -> Result<(), TestCaseError> {

@@ -5,15 +5,31 @@ use num_complex::Complex64;
 use crate::axes::{MECHANICAL, MOTIONS};
 use crate::system::{Element, LinearSystem};
 
-/// Kinetic energy of each coordinate, Re(ū_i (M u)_i): a cross term goes half to each.
+// Kinetic energy of each coordinate, Re(ū_i (M u)_i): a cross term goes half to each.
 fn by_coordinate(system: &LinearSystem, shape: &[Complex64]) -> Vec<f64> {
-    let momentum = momentum(system, shape);
-    shape.iter().zip(&momentum).map(|(u, p)| (u.conj() * p).re).collect()
+    let mass = system.mass();
+    let momentum = |i: usize| -> Complex64 { shape.iter().enumerate().map(|(j, u)| u * mass[(i, j)]).sum() };
+    (0..shape.len()).map(|i| (shape[i].conj() * momentum(i)).re).collect()
 }
 
-fn momentum(system: &LinearSystem, shape: &[Complex64]) -> Vec<Complex64> {
-    let mass = system.mass();
-    (0..shape.len()).map(|i| shape.iter().enumerate().map(|(j, u)| u * mass[(i, j)]).sum()).collect()
+// Travel of an element, g·u.
+fn travel(element: &Element, shape: &[Complex64]) -> Complex64 {
+    element.row.iter().zip(shape).map(|(g, u)| u * *g).sum()
+}
+
+// Momentum of what is mechanical, over the mechanical coordinates.
+fn momentum(system: &LinearSystem, shape: &[Complex64]) -> [Complex64; MECHANICAL] {
+    let mut momentum = [Complex64::new(0.0, 0.0); MECHANICAL];
+    for i in 0..3 {
+        momentum[i] = (0..3).map(|j| shape[j] * system.body[i][j]).sum();
+    }
+    for element in system.elements().iter().filter(|element| !element.kind.is_hydraulic() && element.mass != 0.0) {
+        let velocity = travel(element, shape) * element.mass;
+        for (p, g) in momentum.iter_mut().zip(&element.row) {
+            *p += velocity * *g;
+        }
+    }
+    momentum
 }
 
 /// Scales a shape so that its component of most kinetic energy is 1 (of equal ones, the first).
@@ -37,6 +53,7 @@ pub(super) fn scale(system: &LinearSystem, shape: &mut [Complex64]) {
 
 /// Shares of kinetic energy in body heave, pitch, roll, wheel heave, pitch, roll, warp and the oil,
 /// Re(ā_i (M_a a)_i)/aᴴM_a a with a = Tᵀw/4 for the wheels; all to the oil where nothing with mass moves.
+/// The energy of a line is the oil's, also where its flow follows from wheel travel alone.
 pub(super) fn kinetic(system: &LinearSystem, shape: &[Complex64]) -> [f64; 8] {
     let momentum = momentum(system, shape);
     let energy = |u: Complex64, p: Complex64| (u.conj() * p).re;
@@ -49,7 +66,12 @@ pub(super) fn kinetic(system: &LinearSystem, shape: &[Complex64]) -> [f64; 8] {
         let dot = |v: &[Complex64]| -> Complex64 { (0..4).map(|j| v[3 + j] * pattern[j]).sum() };
         share[3 + i] = energy(dot(shape) / 4.0, dot(&momentum));
     }
-    share[7] = (MECHANICAL..shape.len()).map(|i| energy(shape[i], momentum[i])).sum();
+    share[7] = system
+        .elements()
+        .iter()
+        .filter(|element| element.kind.is_hydraulic() && element.mass != 0.0)
+        .map(|element| element.mass * travel(element, shape).norm_sqr())
+        .sum();
     let total: f64 = share.iter().sum();
     if total > 0.0 && total.is_finite() {
         share.map(|part| part / total)
@@ -70,8 +92,7 @@ pub(super) fn elements(system: &LinearSystem, shape: &[Complex64], scalar: impl 
         if s == 0.0 {
             return 0.0;
         }
-        let travel: Complex64 = element.row.iter().zip(shape).map(|(g, u)| u * *g).sum();
-        s * travel.norm_sqr()
+        s * travel(element, shape).norm_sqr()
     };
     let parts: Vec<f64> = system.elements().iter().map(part).collect();
     let total: f64 = parts.iter().sum();

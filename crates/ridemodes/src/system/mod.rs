@@ -130,6 +130,8 @@ pub struct LinearSystem {
     pub(crate) elements: Vec<Element>,
     pub(crate) pressures: Vec<PressureRow>,
     pub(crate) positions: Positions<f64>,
+    /// Mass block of the body over z, pitch and roll.
+    pub(crate) body: [[f64; 3]; 3],
     pub(crate) mass: DMatrix<f64>,
     pub(crate) damping: DMatrix<f64>,
     pub(crate) stiffness: DMatrix<f64>,
@@ -155,6 +157,7 @@ impl OperatingPoint {
             elements: assembly.elements,
             pressures: assembly.pressures,
             positions: assembly.positions,
+            body: assembly.body,
             mass,
             damping,
             stiffness,
@@ -205,7 +208,9 @@ impl LinearSystem {
         if let Some(chamber) = &self.carried {
             return Err(Error::Singular {
                 matrix: "compliance of the oil with its lines locked".into(),
-                motion: format!("incompressible oil locks the chamber {chamber}; give the oil a bulk modulus and a volume"),
+                motion: format!(
+                    "incompressible oil locks the chamber {chamber}; give the oil a bulk modulus and a volume"
+                ),
             });
         }
         let keep: Vec<usize> =
@@ -226,6 +231,7 @@ impl LinearSystem {
                 .map(|pressure| PressureRow { inflow: row(&pressure.inflow), ..pressure.clone() })
                 .collect(),
             positions: self.positions,
+            body: self.body,
             mass: matrix(&self.mass),
             damping: matrix(&self.damping),
             stiffness: matrix(&self.stiffness),
