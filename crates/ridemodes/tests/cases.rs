@@ -160,7 +160,9 @@ fn compare(car: &Vehicle, point: &OperatingPoint, lin: &LinearSystem, expectatio
     let found = find(car, point, lin, expectation);
     let difference = (found - expectation.value).abs();
     let allowed = expectation.atol + expectation.rtol * expectation.value.abs();
-    (!(difference <= allowed)).then(|| {
+    // What is not a number is never near.
+    let near = difference <= allowed;
+    (!near).then(|| {
         format!(
             "{} {} {:?} is {found}, expected {} (off by {:.1e}, allowed {allowed:.1e})",
             expectation.what,

@@ -81,7 +81,7 @@ fn hub_pressures_follow_the_deflections() {
         // The layout's circuits are left and right, in this order.
         for (circuit, per_travel) in ["left", "right"].iter().zip(crate::oil::Oil::new(&car).hub_pressures(s)) {
             let row = space.outputs.iter().position(|name| *name == format!("pressure.circuits.{circuit}")).unwrap();
-            let expected = (per_travel * &deflection)[0];
+            let expected = (per_travel * deflection)[0];
             assert!((y[row] - expected).norm() <= 1e-8 * expected.norm(), "{} {expected}", y[row]);
             assert_eq!(space.output_units[row], "Pa");
         }

@@ -95,7 +95,7 @@ impl Motions {
             ]);
         }
         table.note(format!(
-            "in pitch the body turns {} m, in bounce {} m ahead of the centre of gravity (wheels without mass)",
+            "centres, metres ahead of the centre of gravity: pitch {}, bounce {} (wheels without mass, tyres in series)",
             fixed(self.pitch_centre, 3),
             fixed(self.bounce_centre, 3)
         ))

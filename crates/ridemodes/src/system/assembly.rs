@@ -265,10 +265,7 @@ mod tests {
     use crate::vehicle::Vehicle;
 
     // M, C and K in any scalar, summed from the elements.
-    fn matrices<T: Scalar>(assembly: &Assembly<T>) -> [DMatrix<T>; 3]
-    where
-        T: nalgebra::Scalar,
-    {
+    fn matrices<T: Scalar + nalgebra::Scalar>(assembly: &Assembly<T>) -> [DMatrix<T>; 3] {
         let n = assembly.coordinates.len();
         let mut sums = [(); 3].map(|()| DMatrix::from_element(n, n, T::zero()));
         for i in 0..3 {

@@ -1,0 +1,293 @@
+"""Pictures of results with matplotlib; each takes ``ax`` and returns what it has drawn."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING, Any
+
+import numpy as np
+
+if TYPE_CHECKING:
+    from matplotlib.artist import Artist
+    from matplotlib.axes import Axes
+    from matplotlib.figure import Figure
+
+    from ._core import LinearSystem, Modes, Motions
+
+# Okabe and Ito's colours, told apart by readers with any colour vision (from memory).
+BLUE, ORANGE, GREEN, GREY = "#0072B2", "#E69F00", "#009E73", "#999999"
+CORNERS = ("front left", "front right", "rear left", "rear right")
+# Around the vehicle, so that the outline does not cross itself.
+ROUND = [0, 1, 3, 2, 0]
+
+
+def _axes(ax: Axes | None, size: tuple[float, float]) -> Axes:
+    if ax is not None:
+        return ax
+    try:
+        from matplotlib import pyplot
+    except ImportError as error:
+        raise ImportError("pictures need matplotlib: pip install ridemodes[plot]") from error
+    axes: Axes = pyplot.subplots(figsize=size, layout="constrained")[1]
+    return axes
+
+
+def _row(modes: Modes, mode: int | str) -> int:
+    if isinstance(mode, str):
+        rows = modes.rows(mode)
+        if not rows:
+            raise KeyError(f'no mode "{mode}"; labels are {", ".join(modes.label)}')
+        return rows[0]
+    return mode
+
+
+def _oblique(x: Any, y: Any, z: Any) -> tuple[Any, Any]:
+    # Seen from behind on the left: ahead goes up to the right, left goes to the left.
+    return 0.5 * np.asarray(x) - 0.87 * np.asarray(y), 0.4 * np.asarray(x) + 0.2 * np.asarray(
+        y
+    ) + np.asarray(z)
+
+
+def mode_shape(
+    modes: Modes, mode: int | str, *, ax: Axes | None = None, scale: float = 0.3
+) -> list[Artist]:
+    """Draw a mode's shape on body corners and wheels, at the moment of largest motion.
+
+    Parameters
+    ----------
+    modes : Modes
+        Modes of a linear system.
+    mode : int or str
+        Row, or label (of an overdamped motion its slower pole).
+    ax : matplotlib.axes.Axes, optional
+        Where to draw; a new figure otherwise.
+    scale : float
+        Height of the largest displacement in the picture [m].
+
+    Returns
+    -------
+    list of matplotlib.artist.Artist
+
+    Raises
+    ------
+    KeyError
+        For a label that is not there.
+    """
+    row = _row(modes, mode)
+    ax = _axes(ax, (5.0, 4.0))
+    x, y = modes.positions
+    z, pitch, roll = modes.shape[row, :3]
+    # z − xθ + yφ at the corners
+    body = z - x * pitch + y * roll
+    wheel = modes.shape[row, 3:7]
+    both = np.concatenate([body, wheel])
+    # The phase at which the sum of squares is largest.
+    phase = np.exp(-0.5j * np.angle(np.sum(both**2)))
+    body, wheel = (body * phase).real, (wheel * phase).real
+    size = max(np.abs(body).max(), np.abs(wheel).max())
+    body, wheel = body * scale / size, wheel * scale / size
+    height = 0.75
+    artists: list[Artist] = []
+
+    def outline(level: Any, **style: Any) -> None:
+        across, up = _oblique(x, y, level)
+        artists.extend(ax.plot(across[ROUND], up[ROUND], **style))
+
+    rest = np.zeros(4)
+    outline(height + rest, color=GREY, linestyle=":", linewidth=1)
+    outline(rest, color=GREY, linestyle=":", linewidth=1)
+    outline(height + body, color=BLUE, linewidth=2, label="body")
+    outline(wheel, color=ORANGE, linewidth=1, label="wheels", marker="o", markersize=7)
+    for corner in range(4):
+        across, up = _oblique(
+            np.repeat(x[corner], 2),
+            np.repeat(y[corner], 2),
+            np.array([wheel[corner], height + body[corner]]),
+        )
+        artists.extend(ax.plot(across, up, color=GREY, linewidth=1))
+    # Below the front right wheel's way, where nothing else is drawn.
+    across, up = _oblique(x[1], y[1], -1.15 * scale)
+    artists.append(ax.text(across, up, "front", ha="center", va="top", fontsize=8, color=GREY))
+    ax.set_aspect("equal")
+    ax.set_axis_off()
+    # The same frame for every mode, so that pictures beside each other compare.
+    corners = np.array([_oblique(x, y, level) for level in (-scale, height + scale)])
+    ax.set_xlim(corners[:, 0].min() - 0.2, corners[:, 0].max() + 0.2)
+    ax.set_ylim(corners[:, 1].min() - 0.1, corners[:, 1].max() + 0.1)
+    ax.set_title(
+        f"{modes.label[row]}\n{modes.frequency[row]:.2f} Hz, "
+        f"{100 * modes.damping_ratio[row]:.0f} % damping",
+        fontsize=10,
+    )
+    return artists
+
+
+def mode_shapes(modes: Modes) -> Figure:
+    """Draw the seven mechanical modes in one figure.
+
+    Parameters
+    ----------
+    modes : Modes
+        Modes of a linear system.
+
+    Returns
+    -------
+    matplotlib.figure.Figure
+    """
+    from matplotlib import pyplot
+
+    labels = [label for label in modes.share_names[:7] if modes.rows(label)]
+    figure, grid = pyplot.subplots(2, 4, figsize=(13, 7), layout="constrained")
+    for ax, label in zip(grid.flat, labels, strict=False):
+        mode_shape(modes, label, ax=ax)
+    for ax in list(grid.flat)[len(labels) :]:
+        ax.set_axis_off()
+    handles, names = grid.flat[0].get_legend_handles_labels()
+    grid.flat[-1].legend(handles, names, loc="center", frameon=False)
+    figure.suptitle(f"Mode shapes ({modes.kind}); dotted: at rest")
+    return figure
+
+
+def _stacked(
+    springs: Any, oil: Any, names: list[str], first: str, unit: str, decimals: int, ax: Axes
+) -> list[Artist]:
+    artists: list[Artist] = []
+    places = np.arange(len(names))
+    artists.extend(ax.bar(places, springs, color=BLUE, label=first))
+    artists.extend(ax.bar(places, oil, bottom=springs, color=ORANGE, label="oil"))
+    for place, total in zip(places, springs + oil, strict=True):
+        text = f"{total:.{decimals}f}"
+        artists.append(ax.annotate(text, (place, total), ha="center", va="bottom"))
+    ax.set_xticks(places, names)
+    ax.set_ylabel(f"at one wheel, {unit}")
+    ax.margins(y=0.12)
+    ax.spines[["top", "right"]].set_visible(False)
+    # Beside the bars, which may fill the axes to the top.
+    artists.append(ax.legend(loc="upper left", bbox_to_anchor=(1.0, 1.0), frameon=False))
+    return artists
+
+
+def motion_stiffness(motions: Motions, *, ax: Axes | None = None) -> list[Artist]:
+    """Draw the stiffness of the four motions, split into springs and oil.
+
+    Parameters
+    ----------
+    motions : Motions
+        The suspension in the four motions.
+    ax : matplotlib.axes.Axes, optional
+        Where to draw; a new figure otherwise.
+
+    Returns
+    -------
+    list of matplotlib.artist.Artist
+    """
+    ax = _axes(ax, (6.0, 4.0))
+    ax.set_title("Stiffness of the four motions")
+    parts = (motions.stiffness_conventional, motions.stiffness_oil)
+    springs, oil = (1e-3 * np.diagonal(part) for part in parts)
+    return _stacked(springs, oil, motions.names, "springs and bars", "N/mm", 1, ax)
+
+
+def motion_damping(motions: Motions, *, ax: Axes | None = None) -> list[Artist]:
+    """Draw the damping of the four motions, split into dampers and oil.
+
+    Parameters
+    ----------
+    motions : Motions
+        The suspension in the four motions.
+    ax : matplotlib.axes.Axes, optional
+        Where to draw; a new figure otherwise.
+
+    Returns
+    -------
+    list of matplotlib.artist.Artist
+    """
+    ax = _axes(ax, (6.0, 4.0))
+    ax.set_title("Damping of the four motions")
+    parts = (motions.damping_conventional, motions.damping_oil)
+    dampers, oil = (np.diagonal(part) for part in parts)
+    return _stacked(dampers, oil, motions.names, "dampers", "N·s/m", 0, ax)
+
+
+def coupling(linear: LinearSystem, *, ax: Axes | None = None) -> list[Artist]:
+    """Draw the quasi-static coupling of the oil at the wheels.
+
+    Parameters
+    ----------
+    linear : LinearSystem
+        A linear system.
+    ax : matplotlib.axes.Axes, optional
+        Where to draw; a new figure otherwise.
+
+    Returns
+    -------
+    list of matplotlib.artist.Artist
+    """
+    ax = _axes(ax, (5.5, 4.5))
+    rate = 1e-3 * linear.coupling
+    limit = float(np.abs(rate).max()) or 1.0
+    image = ax.imshow(rate, cmap="RdBu_r", vmin=-limit, vmax=limit)
+    artists: list[Artist] = [image]
+    for (i, j), value in np.ndenumerate(rate):
+        dark = abs(value) > 0.6 * limit
+        text = f"{value:.2f}" if abs(value) >= 0.005 else "0"
+        artists.append(
+            ax.annotate(text, (j, i), ha="center", va="center", color="white" if dark else "black")
+        )
+    short = [corner.replace(" ", "\n") for corner in CORNERS]
+    ax.set_xticks(range(4), short)
+    ax.set_yticks(range(4), CORNERS)
+    ax.set_xlabel("bump of")
+    ax.set_ylabel("force against bump on")
+    ax.set_title("Coupling of the oil, N/mm")
+    return artists
+
+
+def poles(modes: Modes, *, ax: Axes | None = None, limit: float = 20.0) -> list[Artist]:
+    """Draw the poles in the complex plane, over lines of constant damping ratio.
+
+    Parameters
+    ----------
+    modes : Modes
+        Damped modes.
+    ax : matplotlib.axes.Axes, optional
+        Where to draw; a new figure otherwise.
+    limit : float
+        Natural frequency up to which poles are drawn [Hz]; those beyond are counted in the title.
+
+    Returns
+    -------
+    list of matplotlib.artist.Artist
+    """
+    ax = _axes(ax, (6.0, 5.0))
+    shown = modes.frequency <= limit
+    place = modes.pole[shown] / (2 * np.pi)
+    artists: list[Artist] = list(ax.plot(place.real, place.imag, "o", color=BLUE))
+    top = 1.1 * float(np.abs(place).max()) if shown.any() else limit
+    for ratio in (0.1, 0.3, 0.5, 0.7):
+        end = (-ratio * top, float(np.sqrt(1 - ratio**2)) * top)
+        artists.extend(ax.plot([0, end[0]], [0, end[1]], color=GREY, linewidth=0.7))
+        artists.append(ax.annotate(f"{100 * ratio:.0f} %", end, fontsize=8, color=GREY, ha="right"))
+    # Labels stand beside their poles, spread downwards where they would cover each other.
+    step = 0.055 * top
+    level = np.inf
+    for row in np.flatnonzero(shown)[::-1]:
+        at = modes.pole[row] / (2 * np.pi)
+        level = min(at.imag, level - step)
+        artists.append(
+            ax.annotate(
+                modes.label[row],
+                (at.real, at.imag),
+                (0.06 * top, level),
+                fontsize=8,
+                va="center",
+                arrowprops={"arrowstyle": "-", "color": GREY, "linewidth": 0.5},
+            )
+        )
+    ax.axhline(0, color="black", linewidth=0.7)
+    ax.axvline(0, color="black", linewidth=0.7)
+    ax.set_xlim(right=0.45 * top)
+    ax.set_xlabel("real part / 2π, Hz")
+    ax.set_ylabel("imaginary part / 2π, Hz")
+    beyond = int(np.sum(~shown))
+    ax.set_title("Poles" + (f" ({beyond} beyond {limit:g} Hz)" if beyond else ""))
+    return artists
