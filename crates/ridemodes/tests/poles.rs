@@ -58,6 +58,8 @@ proptest! {
         let gap = distance(&poles, &eigenvalues);
         prop_assert!(gap <= 1e-6, "{:e}", gap);
         prop_assert!(poles.iter().all(|pole| pole.re < 0.0), "{:?}", poles);
+        // A repeated real pole is no oscillation.
+        prop_assert!(poles.iter().all(|pole| pole.im == 0.0 || pole.im.abs() > 1e-9 * pole.norm()), "{:?}", poles);
         let ascending = modes.frequency.windows(2).all(|pair| pair[0] <= pair[1]);
         prop_assert!(ascending);
     }
