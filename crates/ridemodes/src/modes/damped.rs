@@ -24,22 +24,34 @@ pub(super) fn solve(system: &LinearSystem) -> Result<Vec<RawMode>> {
         residual: f64::NAN,
         last: Vec::new(),
     })?;
-    let mut modes: Vec<RawMode> = (0..size)
-        .filter_map(|k| {
-            let pole = eigen.S()[k];
-            let pole = Complex64::new(pole.re, pole.im);
-            // One of each conjugate pair.
-            (pole.im >= 0.0).then(|| {
-                let state = |i: usize| {
-                    let entry = eigen.U()[(i, k)];
-                    Complex64::new(entry.re, entry.im)
-                };
-                RawMode { pole, shape: form.shape(pole, state) }
-            })
-        })
-        .collect();
+    // Rounding turns two equal real poles into a pair with an imaginary part of this size.
+    let rounding = 64.0 * f64::EPSILON * form.state.amax();
+    let mut modes: Vec<RawMode> = Vec::with_capacity(size);
+    for k in 0..size {
+        let pole = Complex64::new(eigen.S()[k].re, eigen.S()[k].im);
+        let state = |i: usize| Complex64::new(eigen.U()[(i, k)].re, eigen.U()[(i, k)].im);
+        if pole.im > rounding {
+            modes.push(RawMode { pole, shape: form.shape(pole, state) });
+        } else if pole.im > 0.0 {
+            modes.extend(real_pair(&form, pole.re, state));
+        } else if pole.im == 0.0 {
+            modes.push(RawMode { pole, shape: form.shape(pole, state) });
+        }
+    }
     modes.sort_by(|a, b| a.pole.norm().total_cmp(&b.pole.norm()).then(a.pole.re.total_cmp(&b.pole.re)));
     Ok(modes)
+}
+
+// Two equal real poles: the real and the imaginary part of the pair's vector span their shapes. Of a defective
+// pole there is one shape, and it stands for both.
+fn real_pair(form: &FirstOrder<'_>, pole: f64, state: impl Fn(usize) -> Complex64) -> [RawMode; 2] {
+    let pole = Complex64::from(pole);
+    let shape = |part: fn(Complex64) -> f64| form.shape(pole, |i| Complex64::from(part(state(i))));
+    let size = |part: fn(Complex64) -> f64| (0..form.state.nrows()).map(|i| part(state(i)).powi(2)).sum::<f64>().sqrt();
+    let (real, imaginary): (fn(Complex64) -> f64, fn(Complex64) -> f64) = (|z| z.re, |z| z.im);
+    let main = if size(real) >= size(imaginary) { real } else { imaginary };
+    let either = |part| if size(part) > 1e-8 * size(main) { shape(part) } else { shape(main) };
+    [RawMode { pole, shape: either(real) }, RawMode { pole, shape: either(imaginary) }]
 }
 
 /// ẋ = A x with x = [s a, η̇, t ζ]: elastic modal coordinates, all second-order rates, first-order ones.
