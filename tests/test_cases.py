@@ -8,6 +8,7 @@ from pathlib import Path
 
 import numpy as np
 import pytest
+
 import ridemodes as rm
 
 FOLDER = Path(__file__).parent.parent / "crates" / "ridemodes" / "tests" / "cases"
@@ -80,7 +81,7 @@ def find(car, expectation):
     return table[MOTIONS.index(of[0]), MOTIONS.index(of[1])]
 
 
-@pytest.mark.parametrize(("vehicles", "case"), cases())
+@pytest.mark.parametrize(("vehicles", "case"), list(cases()))
 def test_case(vehicles, case):
     assert case["source"]
     if "violations" in case:
