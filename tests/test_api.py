@@ -28,6 +28,7 @@ def results(car):
         linear.modes(),
         linear.modes(damped=False),
         linear.state_space(),
+        linear.motions().table(),
     ]
 
 
@@ -55,6 +56,7 @@ def test_other_vehicles_differ(roadster):
 
 def test_arrays_are_read_only_and_kept(roadster):
     kept = {rm.OperatingPoint: 9, rm.LinearSystem: 7, rm.Motions: 16, rm.StateSpace: 4}
+    kept |= {rm.Modes: 11, rm.Element: 1}
     for result in results(roadster):
         for name in arrays(result):
             array = getattr(result, name)

@@ -16,23 +16,24 @@ use crate::table::{Table, result_class};
 #[pyclass(frozen, module = "ridemodes")]
 pub(crate) struct Element {
     core: ridemodes::Element,
+    row: Kept,
 }
 
 impl Element {
     fn new(core: ridemodes::Element) -> Self {
-        Self { core }
+        Self { core, row: Kept::default() }
     }
 
-    fn tables(&self) -> PyResult<String> {
+    fn text(&self) -> String {
         let e = &self.core;
-        Ok(format!(
+        format!(
             "Element({}: {}, mass {:.4e}, damping {:.4e}, stiffness {:.4e})",
             e.name,
             e.kind.name(),
             e.mass,
             e.damping,
             e.stiffness
-        ))
+        )
     }
 }
 
@@ -53,7 +54,7 @@ impl Element {
     /// Row over the coordinates.
     #[getter]
     fn row<'py>(&self, py: Python<'py>) -> PyResult<Real<'py>> {
-        read_only(py, vector(&self.core.row)).map(Real)
+        self.row.real(py, || Ok(vector(&self.core.row)))
     }
 
     /// Mass or inertance.
@@ -80,8 +81,8 @@ impl Element {
         self.core.road.map(ridemodes::Corner::name)
     }
 
-    fn __repr__(&self) -> PyResult<String> {
-        self.tables()
+    fn __repr__(&self) -> String {
+        self.text()
     }
 
     fn __eq__(&self, other: &Bound<'_, PyAny>) -> PyResult<bool> {

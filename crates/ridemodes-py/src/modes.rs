@@ -12,7 +12,7 @@ use crate::table::{Table, result_class};
 #[pyclass(frozen, sequence, module = "ridemodes")]
 pub(crate) struct Modes {
     pub core: Core,
-    kept: [Kept; 9],
+    kept: [Kept; 11],
 }
 
 impl Modes {
@@ -112,7 +112,7 @@ result_class! {
     /// Shares of dissipation, modes x elements; zero without damping.
     #[getter]
     fn dissipation_share<'py>(&self, py: Python<'py>) -> PyResult<Real<'py>> {
-        crate::arrays::read_only(py, self.core.dissipation.clone()).map(Real)
+        self.kept[9].real(py, || Ok(self.core.dissipation.clone()))
     }
 
     /// Names of the coordinates, the columns of `shape`.
@@ -130,8 +130,7 @@ result_class! {
     /// Positions of the corners from the centre of gravity, x forward and y left, 2 x 4 [m].
     #[getter]
     fn positions<'py>(&self, py: Python<'py>) -> PyResult<Real<'py>> {
-        let positions = ridemodes::ndarray::arr2(&self.core.positions);
-        crate::arrays::read_only(py, positions).map(Real)
+        self.kept[10].real(py, || Ok(ridemodes::ndarray::arr2(&self.core.positions)))
     }
 
     fn __len__(&self) -> usize {

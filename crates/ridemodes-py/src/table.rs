@@ -28,6 +28,17 @@ impl Table {
     fn _repr_html_(&self) -> String {
         self.0.to_html()
     }
+
+    #[pyo3(signature = () -> "tuple[object, tuple[bytes]]")]
+    fn __reduce__<'py>(slf: &Bound<'py, Self>) -> PyResult<(Bound<'py, PyAny>, (Bound<'py, pyo3::types::PyBytes>,))> {
+        let bytes = crate::convert::bytes(&slf.get().0)?;
+        Ok((slf.get_type().getattr("_restore")?, (pyo3::types::PyBytes::new(slf.py(), &bytes),)))
+    }
+
+    #[staticmethod]
+    fn _restore(data: &[u8]) -> PyResult<Self> {
+        crate::convert::value(data).map(Self)
+    }
 }
 
 /// The methods of a result class that wraps `core`: its own, and text, HTML, equality, copying and pickling.

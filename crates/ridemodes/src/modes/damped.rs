@@ -45,10 +45,11 @@ pub(super) fn solve(system: &LinearSystem) -> Result<Vec<RawMode>> {
 // Two equal real poles: the real and the imaginary part of the pair's vector span their shapes. Of a defective
 // pole there is one shape, and it stands for both.
 fn real_pair(form: &FirstOrder<'_>, pole: f64, state: impl Fn(usize) -> Complex64) -> [RawMode; 2] {
+    type Part = fn(Complex64) -> f64;
     let pole = Complex64::from(pole);
-    let shape = |part: fn(Complex64) -> f64| form.shape(pole, |i| Complex64::from(part(state(i))));
-    let size = |part: fn(Complex64) -> f64| (0..form.state.nrows()).map(|i| part(state(i)).powi(2)).sum::<f64>().sqrt();
-    let (real, imaginary): (fn(Complex64) -> f64, fn(Complex64) -> f64) = (|z| z.re, |z| z.im);
+    let shape = |part: Part| form.shape(pole, |i| Complex64::from(part(state(i))));
+    let size = |part: Part| (0..form.state.nrows()).map(|i| part(state(i)).powi(2)).sum::<f64>().sqrt();
+    let (real, imaginary): (Part, Part) = (|z| z.re, |z| z.im);
     let main = if size(real) >= size(imaginary) { real } else { imaginary };
     let either = |part| if size(part) > 1e-8 * size(main) { shape(part) } else { shape(main) };
     [RawMode { pole, shape: either(real) }, RawMode { pole, shape: either(imaginary) }]

@@ -6,12 +6,14 @@ mod vehicle;
 
 use std::fmt;
 
+use serde::{Deserialize, Serialize};
+
 /// The caution that goes with results.
 pub const CAUTION: &str = "For engineering judgement, not a release to the road: prove a vehicle with changed suspension by test, \
 under local rules and by qualified people. Pressurised accumulators can injure; charge and service them by their maker's instructions.";
 
 /// A table with a title, headings that carry the units, and notes below.
-#[derive(Clone, Debug, PartialEq, Eq)]
+#[derive(Clone, Debug, PartialEq, Eq, Serialize, Deserialize)]
 pub struct Table {
     /// Title.
     pub title: String,
@@ -24,7 +26,7 @@ pub struct Table {
 }
 
 /// Several tables that belong together.
-#[derive(Clone, Debug, PartialEq, Eq)]
+#[derive(Clone, Debug, PartialEq, Eq, Serialize, Deserialize)]
 pub struct Tables(pub Vec<Table>);
 
 impl Table {
