@@ -1,6 +1,7 @@
 """Against derivations and libraries from outside."""
 
 import control
+import mpmath
 import numpy as np
 import pytest
 import scipy.linalg
@@ -285,3 +286,39 @@ def test_state_space_responds_as_the_matrices(car):
         for rows in (slice(0, 3), slice(3, 7), slice(7, 11)):
             limit = 1e-7 * np.abs(expected[rows]).max()
             np.testing.assert_allclose(transfer[rows], expected[rows], rtol=0, atol=limit)
+
+
+def poles_in_forty_digits(linear):
+    """Poles of μ²K + μC + M with μ = 1/λ, from the elements, by mpmath."""
+    n = len(linear.coordinates)
+    with mpmath.workdps(40):
+        matrices = {name: mpmath.zeros(n) for name in ("mass", "damping", "stiffness")}
+        for element in linear.elements:
+            row = [(i, mpmath.mpf(float(g))) for i, g in enumerate(element.row) if g]
+            for name, matrix in matrices.items():
+                scalar = mpmath.mpf(getattr(element, name))
+                for i, a in row:
+                    for j, b in row:
+                        matrix[i, j] += scalar * a * b
+        value = linear.point.vehicle.value
+        matrices["mass"][0, 0] += value("body.mass")
+        matrices["mass"][1, 1] += value("body.pitch_inertia")
+        matrices["mass"][2, 2] += value("body.roll_inertia")
+        matrices["mass"][1, 2] -= value("body.roll_pitch_product")
+        matrices["mass"][2, 1] -= value("body.roll_pitch_product")
+        inverse = matrices["stiffness"] ** -1
+        companion = mpmath.zeros(2 * n)
+        companion[:n, n:] = mpmath.eye(n)
+        companion[n:, :n] = -(inverse * matrices["mass"])
+        companion[n:, n:] = -(inverse * matrices["damping"])
+        found = mpmath.eig(companion, left=False, right=False)
+        return np.array([complex(1 / mu) for mu in found if abs(mu) > mpmath.mpf(10) ** -18])
+
+
+@pytest.mark.parametrize("name", ["roadster", "delivery_van"])
+def test_every_pole_has_all_its_digits(name):
+    """Slow body modes beside oil that relaxes ten thousand times as fast."""
+    linear = rm.example(name).settle().linear()
+    theirs = poles_in_forty_digits(linear)
+    for pole in linear.modes().pole:
+        assert np.abs(theirs - pole).min() < 1e-14 * abs(pole)
