@@ -184,19 +184,11 @@ def test_rows_and_energy(roadster):
 
 
 def test_import_is_light():
-    code = (
-        "import sys, time, numpy; start = time.perf_counter(); import ridemodes; "
-        "print(time.perf_counter() - start); "
-        "print(*{'scipy', 'xarray', 'pandas', 'matplotlib', 'dask'} & set(sys.modules))"
-    )
-    runs = [
-        subprocess.run([sys.executable, "-c", code], capture_output=True, text=True, check=True)
-        for _ in range(5)
-    ]
-    lines = [run.stdout.splitlines() for run in runs]
-    assert all(line[1] == "" for line in lines)
-    # A budget for what is imported, not for the machine: ten times what was measured.
-    assert min(float(line[0]) for line in lines) < 0.02
+    # Its time is measured in the bench.
+    heavy = "{'scipy', 'xarray', 'pandas', 'matplotlib', 'dask'}"
+    code = f"import sys, ridemodes; print(*{heavy} & set(sys.modules))"
+    run = subprocess.run([sys.executable, "-c", code], capture_output=True, text=True, check=True)
+    assert run.stdout.strip() == ""
 
 
 def test_versions_agree():
