@@ -31,6 +31,7 @@ from ._core import (
     examples,
     load,
     loads,
+    schema,
 )
 from .errors import InvalidInput, NotConverged, ParseError, RidemodesError, Singular, Violation
 
@@ -61,6 +62,7 @@ __all__ = [
     "load",
     "loads",
     "plot",
+    "schema",
 ]
 
 

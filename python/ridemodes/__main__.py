@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import argparse
+import json
 import sys
 from pathlib import Path
 
@@ -83,6 +84,12 @@ def examples(_: argparse.Namespace) -> int:
     return 0
 
 
+def schema(_: argparse.Namespace) -> int:
+    """Print the JSON Schema of the vehicle file."""
+    print(json.dumps(rm.schema(), indent=2))
+    return 0
+
+
 def new(arguments: argparse.Namespace) -> int:
     """Write an example vehicle to a file to start from."""
     path = Path(arguments.path)
@@ -110,6 +117,7 @@ def main(argv: list[str] | None = None) -> int:
     add(check, file)
     add(report, file)
     add(examples)
+    add(schema)
     add(
         new,
         ("path", {"help": "file to write, .toml or .json"}),

@@ -13,7 +13,7 @@ from numpy.typing import NDArray
 from os import PathLike
 from typing import Any, Final, SupportsFloat, SupportsIndex, final
 
-__all__ = ["CAUTION", "VERSION", "Element", "LinearSystem", "Modes", "Motions", "OperatingPoint", "Parameter", "StateSpace", "Table", "Vehicle", "example", "examples", "load", "loads"]
+__all__ = ["CAUTION", "VERSION", "Element", "LinearSystem", "Modes", "Motions", "OperatingPoint", "Parameter", "StateSpace", "Table", "Vehicle", "example", "examples", "load", "loads", "schema"]
 
 CAUTION: Final[str]
 """
@@ -1035,4 +1035,14 @@ def loads(text: str) -> Vehicle:
         With every violation at once.
     ParseError
         Where the text is not TOML or JSON.
+    """
+
+def schema() -> "dict[str, object]":
+    """
+    JSON Schema of the vehicle file (draft 2020-12), generated from the core's tables of fields.
+
+    Returns
+    -------
+    dict
+        Every number carries its SI unit at ``unit``.
     """

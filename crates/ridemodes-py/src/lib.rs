@@ -26,7 +26,7 @@ mod _core {
     #[pymodule_export]
     use crate::table::Table;
     #[pymodule_export]
-    use crate::vehicle::{Parameter, Vehicle, example, examples, load, loads};
+    use crate::vehicle::{Parameter, Vehicle, example, examples, load, loads, schema};
 
     /// Version of the compiled core.
     #[pymodule_export]

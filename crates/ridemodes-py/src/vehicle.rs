@@ -88,6 +88,18 @@ pub(crate) fn examples() -> Vec<&'static str> {
     Core::examples()
 }
 
+/// JSON Schema of the vehicle file (draft 2020-12), generated from the core's tables of fields.
+///
+/// Returns
+/// -------
+/// dict
+///     Every number carries its SI unit at ``unit``.
+#[pyfunction]
+#[pyo3(signature = () -> "dict[str, object]")]
+pub(crate) fn schema(py: Python<'_>) -> PyResult<Bound<'_, PyAny>> {
+    python(py, &ridemodes::spec::json_schema())
+}
+
 /// A number of a vehicle, as `Vehicle.parameters` lists it.
 #[pyclass(frozen, eq, module = "ridemodes")]
 #[derive(Clone, PartialEq)]
