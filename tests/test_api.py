@@ -29,6 +29,7 @@ def results(car):
         linear.modes(damped=False),
         linear.state_space(),
         linear.motions().table(),
+        linear.sensitivities(),
     ]
 
 
@@ -156,7 +157,7 @@ def test_works_in_threads(roadster):
 
 def test_data_sets_carry_units(roadster):
     linear = roadster.settle().linear()
-    for result in (linear.point, linear, linear.motions(), linear.modes()):
+    for result in (linear.point, linear, linear.motions(), linear.modes(), linear.sensitivities()):
         data = result.to_xarray()
         assert data.attrs["schema_version"] == 1
         for name, variable in data.variables.items():

@@ -13,7 +13,7 @@ from numpy.typing import NDArray
 from os import PathLike
 from typing import Any, Final, SupportsFloat, SupportsIndex, final
 
-__all__ = ["CAUTION", "VERSION", "Element", "LinearSystem", "Modes", "Motions", "OperatingPoint", "Parameter", "StateSpace", "Table", "Vehicle", "example", "examples", "load", "loads", "schema"]
+__all__ = ["CAUTION", "VERSION", "Element", "LinearSystem", "Modes", "Motions", "OperatingPoint", "Parameter", "Sensitivities", "StateSpace", "Table", "Vehicle", "example", "examples", "load", "loads", "schema"]
 
 CAUTION: Final[str]
 """
@@ -198,6 +198,19 @@ class LinearSystem:
     def road_stiffness(self, /) -> NDArray[float64]:
         """
         Force on the coordinates per road height under each wheel, n x 4.
+        """
+    def sensitivities(self, /) -> Sensitivities:
+        """
+        Derivatives of modes, motions and coupling with respect to every number of the vehicle, all at once.
+
+        Returns
+        -------
+        Sensitivities
+
+        Raises
+        ------
+        Singular
+            Where a motion is free.
         """
     def state_space(self, /) -> StateSpace:
         """
@@ -711,6 +724,123 @@ class Parameter:
     def value(self, /) -> float:
         """
         Value in SI.
+        """
+
+@final
+class Sensitivities:
+    """
+    Derivatives of damped modes, four-motion tables and coupling with respect to every number of the vehicle.
+
+    The last axis follows `paths`. A number whose change would alter the coordinates (a throttle of zero) is
+    `excluded`, and a mode whose pole equals another's is `repeated`: their entries are NaN.
+    """
+    def __copy__(self, /) -> Sensitivities: ...
+    def __deepcopy__(self, /, _memo: Any) -> Sensitivities: ...
+    def __eq__(self, other: object, /) -> bool: ...
+    def __reduce__(self, /) -> "tuple[object, tuple[bytes]]": ...
+    def __repr__(self, /) -> str: ...
+    def __str__(self, /) -> str: ...
+    def _repr_html_(self, /) -> str: ...
+    @staticmethod
+    def _restore(data: bytes) -> Sensitivities: ...
+    @property
+    def coupling(self, /) -> NDArray[float64]:
+        """
+        Derivatives of the coupling of the oil at the wheels, 4 x 4 x paths [N/m per unit].
+        """
+    @property
+    def damping(self, /) -> NDArray[float64]:
+        """
+        Derivatives of the damping in the four motions, 4 x 4 x paths [N*s/m per unit].
+        """
+    @property
+    def damping_ratio(self, /) -> NDArray[float64]:
+        """
+        Derivatives of the damping ratios, modes x paths [1 per unit of the number].
+        """
+    @property
+    def excluded(self, /) -> list[str]:
+        """
+        Paths of numbers without a derivative.
+        """
+    @property
+    def frequency(self, /) -> NDArray[float64]:
+        """
+        Derivatives of the frequencies, modes x paths [Hz per unit of the number].
+        """
+    @property
+    def modes(self, /) -> Modes:
+        """
+        The damped modes that are differentiated; their rows are those of the derivatives.
+        """
+    def motion_table(self, /) -> Table:
+        """
+        What moves stiffness and damping of the four motions, as a table, the largest effect first.
+
+        Returns
+        -------
+        Table
+        """
+    @property
+    def paths(self, /) -> list[str]:
+        """
+        Paths of the numbers.
+        """
+    @property
+    def relative_damping_ratio(self, /) -> NDArray[float64]:
+        """
+        Per cent of damping ratio per per cent of the number, modes x paths.
+        """
+    @property
+    def relative_frequency(self, /) -> NDArray[float64]:
+        """
+        Per cent of frequency per per cent of the number, modes x paths.
+        """
+    @property
+    def repeated(self, /) -> NDArray[bool_]:
+        """
+        Whether a mode's pole equals another's: only the sum of equal poles has a gradient.
+        """
+    @property
+    def stiffness(self, /) -> NDArray[float64]:
+        """
+        Derivatives of the stiffness in the four motions, 4 x 4 x paths [N/m per unit].
+        """
+    def table(self, /, label: str) -> Table:
+        """
+        What moves a mode, as a table, the largest effect first.
+
+        Parameters
+        ----------
+        label : str
+            Label of the mode, e.g. ``body roll``.
+
+        Returns
+        -------
+        Table
+
+        Raises
+        ------
+        KeyError
+            For a label that is not there.
+        """
+    def to_xarray(self, /) -> "xarray.Dataset":
+        """
+        The derivatives as an `xarray.Dataset`.
+
+        Returns
+        -------
+        xarray.Dataset
+        """
+    @property
+    def units(self, /) -> list[str]:
+        """
+        Units of the numbers.
+        """
+    @property
+    def values(self, /) -> NDArray[float64]:
+        """
+        Values of the numbers, in SI.
         """
 
 @final

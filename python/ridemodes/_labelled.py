@@ -10,7 +10,7 @@ if TYPE_CHECKING:
     import pandas
     import xarray
 
-    from ._core import LinearSystem, Modes, Motions, OperatingPoint
+    from ._core import LinearSystem, Modes, Motions, OperatingPoint, Sensitivities
 
 CORNERS = ["front_left", "front_right", "rear_left", "rear_right"]
 SCHEMA_VERSION = 1
@@ -180,6 +180,44 @@ def linear_to_xarray(linear: LinearSystem) -> xarray.Dataset:
         {
             "coordinate": linear.coordinates,
             "coordinate_": linear.coordinates,
+            "corner": CORNERS,
+            "corner_": CORNERS,
+        },
+    )
+
+
+def sensitivities_to_xarray(found: Sensitivities) -> xarray.Dataset:
+    """Derivatives over path and mode or motions; units are those named over `parameter_unit`."""
+    mode, square = ("mode", "path"), ("motion", "motion_", "path")
+    names = ["heave", "pitch", "roll", "warp"]
+    return _dataset(
+        {
+            "value": (("path",), found.values, "SI by parameter_unit", "value of the number"),
+            "parameter_unit": (("path",), found.units, "1", "unit of the number"),
+            "label": (("mode",), found.modes.label, "1", "label"),
+            "frequency": (mode, found.frequency, "Hz/parameter_unit", "d natural frequency"),
+            "damping_ratio": (mode, found.damping_ratio, "1/parameter_unit", "d damping ratio"),
+            "relative_frequency": (mode, found.relative_frequency, "1", "per cent per per cent"),
+            "relative_damping_ratio": (
+                mode,
+                found.relative_damping_ratio,
+                "1",
+                "per cent per per cent",
+            ),
+            "stiffness": (square, found.stiffness, "(N/m)/parameter_unit", "d stiffness"),
+            "damping": (square, found.damping, "(N*s/m)/parameter_unit", "d damping"),
+            "coupling": (
+                ("corner", "corner_", "path"),
+                found.coupling,
+                "(N/m)/parameter_unit",
+                "d coupling",
+            ),
+        },
+        {
+            "path": found.paths,
+            "mode": np.arange(len(found.frequency)),
+            "motion": names,
+            "motion_": names,
             "corner": CORNERS,
             "corner_": CORNERS,
         },

@@ -7,6 +7,7 @@ mod linear;
 mod modes;
 mod motions;
 mod point;
+mod sensitivities;
 mod table;
 mod vehicle;
 
@@ -23,6 +24,8 @@ mod _core {
     use crate::motions::Motions;
     #[pymodule_export]
     use crate::point::OperatingPoint;
+    #[pymodule_export]
+    use crate::sensitivities::Sensitivities;
     #[pymodule_export]
     use crate::table::Table;
     #[pymodule_export]

@@ -10,6 +10,7 @@ use crate::errors::{labelled, raise};
 use crate::modes::Modes;
 use crate::motions::Motions;
 use crate::point::OperatingPoint;
+use crate::sensitivities::Sensitivities;
 use crate::table::{Table, result_class};
 
 /// A named element: it adds ``mass``, ``damping`` and ``stiffness`` times ``outer(row, row)`` to the matrices.
@@ -257,6 +258,20 @@ result_class! {
             (true, true) => return Err(PyValueError::new_err("locked lines have no damping: give damped=False")),
         };
         py.detach(|| self.core.modes_of(kind)).map(Modes::new).map_err(raise)
+    }
+
+    /// Derivatives of modes, motions and coupling with respect to every number of the vehicle, all at once.
+    ///
+    /// Returns
+    /// -------
+    /// Sensitivities
+    ///
+    /// Raises
+    /// ------
+    /// Singular
+    ///     Where a motion is free.
+    fn sensitivities(&self, py: Python<'_>) -> PyResult<Sensitivities> {
+        py.detach(|| self.core.sensitivities()).map(Sensitivities::new).map_err(raise)
     }
 
     /// The system as state space, for `scipy.signal` or python-control.

@@ -4,7 +4,7 @@ use std::fs;
 use std::path::{Path, PathBuf};
 
 /// Modules of `src` from the lowest layer to the highest; those of one layer stand in one row.
-const LAYERS: [&[&str]; 10] = [
+const LAYERS: [&[&str]; 11] = [
     &["error", "axes", "units", "numerics"],
     &["spec"],
     &["gas"],
@@ -13,6 +13,7 @@ const LAYERS: [&[&str]; 10] = [
     &["statics"],
     &["system"],
     &["corner_motions", "modes"],
+    &["sensitivities"],
     &["report"],
     &["examples"],
 ];

@@ -18,6 +18,7 @@ mod oil;
 mod paths;
 mod poles;
 mod random;
+mod sensitivities;
 mod shares;
 mod statics;
 mod support;

@@ -4,5 +4,5 @@ mod network;
 mod oil;
 mod reduction;
 
-pub(crate) use network::{Chamber, LineValues, Network, Store};
+pub(crate) use network::{Chamber, Line, LineValues, Network, Store};
 pub(crate) use reduction::{Reduction, Row, reduce};

@@ -26,10 +26,13 @@ pub(super) fn solve(system: &LinearSystem) -> Result<Vec<RawMode>> {
     })?;
     // Rounding turns two equal real poles into a pair with an imaginary part of this size.
     let rounding = 64.0 * f64::EPSILON * form.state.amax();
+    let poles: Vec<Complex64> = (0..size).map(|k| Complex64::new(eigen.S()[k].re, eigen.S()[k].im)).collect();
+    let mut vectors = DMatrix::from_fn(size, size, |i, k| Complex64::new(eigen.U()[(i, k)].re, eigen.U()[(i, k)].im));
+    mend_repeated(&form.state, &poles, &mut vectors);
     let mut modes: Vec<RawMode> = Vec::with_capacity(size);
     for k in 0..size {
-        let pole = Complex64::new(eigen.S()[k].re, eigen.S()[k].im);
-        let state = |i: usize| Complex64::new(eigen.U()[(i, k)].re, eigen.U()[(i, k)].im);
+        let pole = poles[k];
+        let state = |i: usize| vectors[(i, k)];
         if pole.im > rounding {
             modes.push(RawMode { pole, shape: form.shape(pole, state) });
         } else if pole.im > 0.0 {
@@ -39,24 +42,52 @@ pub(super) fn solve(system: &LinearSystem) -> Result<Vec<RawMode>> {
         }
     }
     for mode in &mut modes {
-        mode.pole = refined(system, mode);
+        mode.pole = refined(system, mode, 64.0 * rounding);
     }
     modes.sort_by(|a, b| a.pole.norm().total_cmp(&b.pole.norm()).then(a.pole.re.total_cmp(&b.pole.re)));
     Ok(modes)
 }
 
+// Vectors of equal poles come out of back substitution with a large residual. They are replaced by the null
+// vectors of A − λI, from its singular vectors; where there are fewer of them than poles, the pole is defective and
+// its vectors repeat.
+fn mend_repeated(state: &DMatrix<f64>, poles: &[Complex64], vectors: &mut DMatrix<Complex64>) {
+    let size = state.nrows();
+    let scale = state.amax();
+    let complex = state.map(Complex64::from);
+    let residual = |vectors: &DMatrix<Complex64>, k: usize| {
+        let column = vectors.column(k);
+        (&complex * column - column * poles[k]).norm() / (scale * column.norm())
+    };
+    let mut done = vec![false; size];
+    for k in 0..size {
+        if done[k] || residual(vectors, k) <= 1e3 * size as f64 * f64::EPSILON {
+            continue;
+        }
+        let equal: Vec<usize> = (0..size).filter(|&j| (poles[j] - poles[k]).norm() <= 1e-9 * poles[k].norm()).collect();
+        let shifted = &complex - DMatrix::from_diagonal_element(size, size, poles[k]);
+        let Some(right) = shifted.svd(false, true).v_t else { continue };
+        // Singular values descend: the last rows span the null space.
+        let null = |place: usize| right.row(size - 1 - place).adjoint();
+        let is_null = |place: usize| (&complex * null(place) - null(place) * poles[k]).norm() <= 1e-9 * scale;
+        let count = (0..equal.len()).take_while(|&place| is_null(place)).count().max(1);
+        for (place, &j) in equal.iter().enumerate() {
+            vectors.set_column(j, &null(place % count));
+            done[j] = true;
+        }
+    }
+}
+
 // One Newton step on ψᵀ(λ²M + λC + K)ψ = 0. The eigensolver's rounding is relative to the largest pole; the
 // quotient is stationary in the shape (left vectors are right vectors, transposed), so it gives slow poles beside
 // stiff oil their digits back. It is summed over the elements, whose travels are small where the oil is stiff.
-fn refined(system: &LinearSystem, mode: &RawMode) -> Complex64 {
+fn refined(system: &LinearSystem, mode: &RawMode, rounding: f64) -> Complex64 {
     let (pole, shape) = (mode.pole, &mode.shape);
     let mut value = Complex64::new(0.0, 0.0);
     let mut slope = value;
-    let mut size = 0.0;
     let mut add = |mass: f64, damping: f64, stiffness: f64, square: Complex64| {
         value += (pole * (pole * mass + damping) + stiffness) * square;
         slope += (pole * (2.0 * mass) + damping) * square;
-        size += (2.0 * pole.norm() * mass.abs() + damping) * square.norm();
     };
     for element in system.elements() {
         let travel: Complex64 = element.row.iter().zip(shape).map(|(g, u)| u * *g).sum();
@@ -67,10 +98,10 @@ fn refined(system: &LinearSystem, mode: &RawMode) -> Complex64 {
             add(system.body[i][j], 0.0, 0.0, shape[i] * shape[j]);
         }
     }
-    // Of a nearly defective pole, or a mix of two equal ones, the slope vanishes: nothing to gain there.
+    // A longer step than the eigensolver's rounding comes from a nearly defective pole or from a mix of two equal
+    // ones, where the slope vanishes: there is nothing to gain.
     let step = value / slope;
-    let trusted = slope.norm() > 1e-4 * size && step.norm() < 1e-5 * pole.norm();
-    if trusted { pole - step } else { pole }
+    if step.norm() <= rounding { pole - step } else { pole }
 }
 
 // Two equal real poles: the real and the imaginary part of the pair's vector span their shapes. Of a defective

@@ -2,6 +2,7 @@
 
 mod modes;
 mod motions;
+mod sensitivities;
 mod vehicle;
 
 use std::fmt;

@@ -8,6 +8,7 @@ use super::canonical::scaled_cholesky;
 use super::{Element, LinearSystem};
 use crate::axes::MECHANICAL;
 use crate::error::{Error, Result};
+use crate::numerics::Dual;
 
 /// Volumes and inner coordinates per wheel travel at vanishing frequency, u_i = X δ.
 ///
@@ -98,7 +99,38 @@ impl QuasiStatic {
 
     /// Travel of an element per wheel travel.
     pub(crate) fn row(&self, element: &Element) -> [f64; 4] {
-        std::array::from_fn(|j| inner_row(element).enumerate().map(|(i, g)| g * self.follow[(i, j)]).sum())
+        self.follow(inner_row(element))
+    }
+
+    /// A row over wheel travel and inner coordinates, per wheel travel.
+    pub(crate) fn follow(&self, row: impl Iterator<Item = f64>) -> [f64; 4] {
+        let mut total = [0.0; 4];
+        for (i, g) in row.enumerate().filter(|(_, g)| *g != 0.0) {
+            for (j, sum) in total.iter_mut().enumerate() {
+                *sum += g * self.follow[(i, j)];
+            }
+        }
+        total
+    }
+
+    /// dX of the inner coordinates (inner × 4) from K_hh dX = −(dK_hδ + dK_hh X); `None` where there are none.
+    pub(crate) fn derivative(&self, system: &LinearSystem, elements: &[Element<Dual>]) -> Option<DMatrix<f64>> {
+        let inner = system.coordinates.len() - MECHANICAL;
+        let own = sum(system, |element| element.stiffness).view((4, 4), (inner, inner)).into_owned();
+        // d(Σ k g (g·[I; X])) at fixed X
+        let mut right = DMatrix::zeros(inner, 4);
+        for element in elements.iter().filter(|e| e.kind.is_hydraulic() || e.kind.is_conventional()) {
+            let travel = self.follow(element.row[3..].iter().map(|g| g.value));
+            let turned = self.follow(element.row[3..].iter().map(|g| g.derivative));
+            let k = element.stiffness;
+            for (i, g) in element.row[MECHANICAL..].iter().enumerate() {
+                for j in 0..4 {
+                    right[(i, j)] +=
+                        (k.derivative * g.value + k.value * g.derivative) * travel[j] + k.value * g.value * turned[j];
+                }
+            }
+        }
+        (inner > 0).then(|| scaled_cholesky(&own).map(|factor| -factor.solve(&right)))?
     }
 }
 

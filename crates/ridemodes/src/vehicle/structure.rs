@@ -78,6 +78,13 @@ impl Structure {
             .map(|(path, _)| path.as_str())
     }
 
+    /// Whether the number stands where a change of it would alter the coordinates: a way without resistance and
+    /// inertance, whose throttle would open one more.
+    pub(crate) fn decides_structure(&self, slot: usize, numbers: &[f64]) -> bool {
+        let ideal = |line: &crate::hydraulics::Line| line.pipe.is_none() && numbers[line.throttle.0] == 0.0;
+        self.network.lines.iter().any(|line| line.throttle.0 == slot && ideal(line))
+    }
+
     /// The file's tree with numbers in SI.
     pub(crate) fn filled(&self, numbers: &[f64]) -> Tree {
         fill(&self.given, Spec::<f64>::SCHEMA, &|slot| {
