@@ -22,4 +22,5 @@ mod sensitivities;
 mod shares;
 mod statics;
 mod support;
+mod sweeps;
 mod text;
