@@ -24,6 +24,8 @@ def test_each_draws_into_the_axes_given(car, ax):
         lambda: rm.plot.motion_damping(motions, ax=ax),
         lambda: rm.plot.coupling(linear, ax=ax),
         lambda: rm.plot.poles(modes, ax=ax),
+        lambda: rm.plot.sweep(car.sweep("body.mass", [900.0, 1000.0]), ax=ax),
+        lambda: rm.plot.sweep(car.sweep("body.mass", [900.0, 1000.0]), ax=ax, damping=True),
     ]
     for call in calls:
         ax.clear()

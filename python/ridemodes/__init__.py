@@ -18,6 +18,7 @@ from typing import TYPE_CHECKING, Any
 
 from ._core import (
     CAUTION,
+    Decoupling,
     Element,
     LinearSystem,
     Modes,
@@ -26,6 +27,7 @@ from ._core import (
     Parameter,
     Sensitivities,
     StateSpace,
+    Sweep,
     Table,
     Vehicle,
     example,
@@ -43,6 +45,7 @@ if TYPE_CHECKING:
 
 __all__ = [
     "CAUTION",
+    "Decoupling",
     "Element",
     "InvalidInput",
     "LinearSystem",
@@ -56,6 +59,7 @@ __all__ = [
     "Sensitivities",
     "Singular",
     "StateSpace",
+    "Sweep",
     "Table",
     "Vehicle",
     "Violation",

@@ -13,7 +13,7 @@ from numpy.typing import NDArray
 from os import PathLike
 from typing import Any, Final, SupportsFloat, SupportsIndex, final
 
-__all__ = ["CAUTION", "VERSION", "Element", "LinearSystem", "Modes", "Motions", "OperatingPoint", "Parameter", "Sensitivities", "StateSpace", "Table", "Vehicle", "example", "examples", "load", "loads", "schema"]
+__all__ = ["CAUTION", "VERSION", "Decoupling", "Element", "LinearSystem", "Modes", "Motions", "OperatingPoint", "Parameter", "Sensitivities", "StateSpace", "Sweep", "Table", "Vehicle", "example", "examples", "load", "loads", "schema"]
 
 CAUTION: Final[str]
 """
@@ -24,6 +24,69 @@ VERSION: Final[str]
 """
 Version of the compiled core.
 """
+
+@final
+class Decoupling:
+    """
+    What each number could do, alone, to decouple two motions in stiffness; the smallest change first.
+    """
+    def __copy__(self, /) -> Decoupling: ...
+    def __deepcopy__(self, /, _memo: Any) -> Decoupling: ...
+    def __eq__(self, other: object, /) -> bool: ...
+    def __reduce__(self, /) -> "tuple[object, tuple[bytes]]": ...
+    def __repr__(self, /) -> str: ...
+    def __str__(self, /) -> str: ...
+    def _repr_html_(self, /) -> str: ...
+    @staticmethod
+    def _restore(data: bytes) -> Decoupling: ...
+    @property
+    def cross(self, /) -> float:
+        """
+        Coupling of the vehicle as it is [1].
+        """
+    @property
+    def least(self, /) -> NDArray[float64]:
+        """
+        Coupling that each number reaches: zero at a solution, else the least it can [1].
+        """
+    @property
+    def least_at(self, /) -> NDArray[float64]:
+        """
+        Values at which that is met, in SI.
+        """
+    @property
+    def motions(self, /) -> tuple[str, str]:
+        """
+        The two motions.
+        """
+    @property
+    def paths(self, /) -> list[str]:
+        """
+        Paths of the numbers that move the coupling.
+        """
+    @property
+    def solutions(self, /) -> NDArray[float64]:
+        """
+        Values that decouple, in SI; NaN where none within the range does.
+        """
+    def table(self, /) -> Table:
+        """
+        What each number could do, as a table.
+
+        Returns
+        -------
+        Table
+        """
+    @property
+    def units(self, /) -> list[str]:
+        """
+        Units of the numbers.
+        """
+    @property
+    def values(self, /) -> NDArray[float64]:
+        """
+        Values of the numbers as they are, in SI.
+        """
 
 @final
 class Element:
@@ -904,6 +967,90 @@ class StateSpace:
         """
 
 @final
+class Sweep:
+    """
+    Modes along a sweep of one number, followed by shape.
+
+    Arrays are branches x values, NaN where a branch is not there: a pair that turns into two real poles goes on as
+    one of them, and the other begins a branch.
+    """
+    def __copy__(self, /) -> Sweep: ...
+    def __deepcopy__(self, /, _memo: Any) -> Sweep: ...
+    def __eq__(self, other: object, /) -> bool: ...
+    def __reduce__(self, /) -> "tuple[object, tuple[bytes]]": ...
+    def __repr__(self, /) -> str: ...
+    def __str__(self, /) -> str: ...
+    def _repr_html_(self, /) -> str: ...
+    @staticmethod
+    def _restore(data: bytes) -> Sweep: ...
+    @property
+    def damping_ratio(self, /) -> NDArray[float64]:
+        """
+        Damping ratios, branches x values [1].
+        """
+    @property
+    def frequency(self, /) -> NDArray[float64]:
+        """
+        Natural frequencies, branches x values [Hz].
+        """
+    @property
+    def label(self, /) -> list[str]:
+        """
+        Label of each branch where it begins.
+        """
+    @property
+    def likeness(self, /) -> NDArray[float64]:
+        """
+        Least likeness met from step to step on each branch, 1 for the same shape.
+        """
+    @property
+    def modes(self, /) -> list[Modes]:
+        """
+        The modes at each value.
+        """
+    @property
+    def path(self, /) -> str:
+        """
+        Path that is varied.
+        """
+    @property
+    def pole(self, /) -> NDArray[complex128]:
+        """
+        Poles, branches x values [rad/s].
+        """
+    @property
+    def row(self, /) -> NDArray[float64]:
+        """
+        Row of each branch in `modes`, branches x values, as floats; NaN where it is not there.
+        """
+    def table(self, /) -> Table:
+        """
+        Frequency and damping at the ends, as a table.
+
+        Returns
+        -------
+        Table
+        """
+    def to_xarray(self, /) -> "xarray.Dataset":
+        """
+        The branches as an `xarray.Dataset`.
+
+        Returns
+        -------
+        xarray.Dataset
+        """
+    @property
+    def unit(self, /) -> str:
+        """
+        Unit of the values.
+        """
+    @property
+    def values(self, /) -> NDArray[float64]:
+        """
+        Values, in SI.
+        """
+
+@final
 class Table:
     """
     Table with a title, headings that carry the units, and notes.
@@ -938,6 +1085,26 @@ class Vehicle:
     def circuits(self, /) -> list[str]:
         """
         Names of the circuits.
+        """
+    def decoupling(self, /, first: str, second: str) -> Decoupling:
+        """
+        For every number the value that would decouple two motions in stiffness, solved one number at a time.
+
+        Parameters
+        ----------
+        first : str
+            One of heave, pitch, roll and warp.
+        second : str
+            Another of them.
+
+        Returns
+        -------
+        Decoupling
+
+        Raises
+        ------
+        InvalidInput
+            For a name that is no motion.
         """
     @property
     def description(self, /) -> str | None:
@@ -1002,6 +1169,26 @@ class Vehicle:
         Returns
         -------
         OperatingPoint
+        """
+    def sweep(self, /, path: str, values: "numpy.typing.ArrayLike") -> "Sweep":
+        """
+        Varies one number and follows every mode by shape, halving steps that leave it unclear.
+
+        Parameters
+        ----------
+        path : str
+            Path of the number.
+        values : array_like
+            Its values, in SI, in the order to be followed.
+
+        Returns
+        -------
+        Sweep
+
+        Raises
+        ------
+        InvalidInput
+            For an unknown path, or values out of their bounds; nothing is computed then.
         """
     def table(self, /) -> Table:
         """

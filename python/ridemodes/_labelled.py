@@ -10,7 +10,7 @@ if TYPE_CHECKING:
     import pandas
     import xarray
 
-    from ._core import LinearSystem, Modes, Motions, OperatingPoint, Sensitivities
+    from ._core import LinearSystem, Modes, Motions, OperatingPoint, Sensitivities, Sweep
 
 CORNERS = ["front_left", "front_right", "rear_left", "rear_right"]
 SCHEMA_VERSION = 1
@@ -222,3 +222,20 @@ def sensitivities_to_xarray(found: Sensitivities) -> xarray.Dataset:
             "corner_": CORNERS,
         },
     )
+
+
+def sweep_to_xarray(sweep: Sweep) -> xarray.Dataset:
+    """Poles over branch and value; the coordinate of the values is called `value`."""
+    table = ("branch", "value")
+    data = _dataset(
+        {
+            "label": (("branch",), sweep.label, "1", "label where the branch begins"),
+            "pole": (table, sweep.pole, "rad/s", "pole"),
+            "frequency": (table, sweep.frequency, "Hz", "natural frequency"),
+            "damping_ratio": (table, sweep.damping_ratio, "1", "damping ratio"),
+            "likeness": (("branch",), sweep.likeness, "1", "least likeness of the steps"),
+        },
+        {"branch": np.arange(len(sweep.label)), "value": sweep.values},
+    )
+    data["value"].attrs.update({"units": sweep.unit or "1", "long_name": sweep.path})
+    return data

@@ -11,7 +11,7 @@ if TYPE_CHECKING:
     from matplotlib.axes import Axes
     from matplotlib.figure import Figure
 
-    from ._core import LinearSystem, Modes, Motions
+    from ._core import LinearSystem, Modes, Motions, Sweep
 
 # Okabe and Ito's colours, told apart by readers with any colour vision (from memory).
 BLUE, ORANGE, GREEN, GREY = "#0072B2", "#E69F00", "#009E73", "#999999"
@@ -291,4 +291,44 @@ def poles(modes: Modes, *, ax: Axes | None = None, limit: float = 20.0) -> list[
     ax.set_ylabel("imaginary part / 2π, Hz")
     beyond = int(np.sum(~shown))
     ax.set_title("Poles" + (f" ({beyond} beyond {limit:g} Hz)" if beyond else ""))
+    return artists
+
+
+def sweep(
+    followed: Sweep, *, ax: Axes | None = None, limit: float = 20.0, damping: bool = False
+) -> list[Artist]:
+    """Draw natural frequencies or damping ratios of a sweep's branches over the number varied.
+
+    Parameters
+    ----------
+    followed : Sweep
+        A sweep of one number.
+    ax : matplotlib.axes.Axes, optional
+        Where to draw; a new figure otherwise.
+    limit : float
+        Branches that stay above this natural frequency are left out [Hz].
+    damping : bool
+        Draw damping ratios instead of frequencies.
+
+    Returns
+    -------
+    list of matplotlib.artist.Artist
+    """
+    ax = _axes(ax, (7.0, 4.5))
+    styles = ["-", "--", "-.", ":"]
+    artists: list[Artist] = []
+    table = 100 * followed.damping_ratio if damping else followed.frequency
+    low = [b for b, f in enumerate(followed.frequency) if np.nanmin(f) <= limit]
+    for place, branch in enumerate(low):
+        color = (BLUE, ORANGE, GREEN, "black")[place % 4]
+        style = styles[place // 4 % 4]
+        label = followed.label[branch]
+        artists.extend(
+            ax.plot(followed.values, table[branch], color=color, linestyle=style, label=label)
+        )
+    unit = "" if followed.unit in ("", "1") else f", {followed.unit}"
+    ax.set_xlabel(f"{followed.path}{unit}")
+    ax.set_ylabel("damping, %" if damping else "natural frequency, Hz")
+    ax.spines[["top", "right"]].set_visible(False)
+    artists.append(ax.legend(loc="upper left", bbox_to_anchor=(1.0, 1.0), frameon=False))
     return artists

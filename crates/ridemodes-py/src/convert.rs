@@ -76,29 +76,33 @@ pub(crate) fn python<'py>(py: Python<'py>, value: &Value) -> PyResult<Bound<'py,
 
 /// Frequencies given as a number or anything NumPy takes for a one-dimensional array of finite numbers.
 pub(crate) fn frequencies(data: &Bound<'_, PyAny>) -> PyResult<Vec<f64>> {
-    let py = data.py();
-    let array = py.import("numpy")?.call_method1("asarray", (data,))?;
-    let kind: String = array.getattr("dtype")?.getattr("kind")?.extract()?;
-    if !matches!(kind.as_str(), "f" | "i" | "u") {
-        return Err(PyTypeError::new_err(format!(
-            "frequency must be real numbers in Hz, not {}",
-            array.getattr("dtype")?
-        )));
-    }
-    let dimensions: usize = array.getattr("ndim")?.extract()?;
-    if dimensions > 1 {
-        return Err(PyValueError::new_err(format!(
-            "frequency must be a number or one-dimensional, not {dimensions}-dimensional"
-        )));
-    }
-    let values: Vec<f64> =
-        array.call_method0("ravel")?.call_method1("astype", ("float64",))?.call_method0("tolist")?.extract()?;
+    let values = real_vector(data, "frequency")?;
     match values.iter().find(|value| !value.is_finite() || **value < 0.0) {
         Some(wrong) => {
             Err(PyValueError::new_err(format!("frequency must be finite and not negative [Hz], not {wrong}")))
         }
         None => Ok(values),
     }
+}
+
+/// Numbers of a sweep; what is not finite is refused by the core, with its path.
+pub(crate) fn numbers(data: &Bound<'_, PyAny>) -> PyResult<Vec<f64>> {
+    real_vector(data, "values")
+}
+
+fn real_vector(data: &Bound<'_, PyAny>, name: &str) -> PyResult<Vec<f64>> {
+    let array = data.py().import("numpy")?.call_method1("asarray", (data,))?;
+    let kind: String = array.getattr("dtype")?.getattr("kind")?.extract()?;
+    if !matches!(kind.as_str(), "f" | "i" | "u") {
+        return Err(PyTypeError::new_err(format!("{name} must be real numbers, not {}", array.getattr("dtype")?)));
+    }
+    let dimensions: usize = array.getattr("ndim")?.extract()?;
+    if dimensions > 1 {
+        return Err(PyValueError::new_err(format!(
+            "{name} must be a number or one-dimensional, not {dimensions}-dimensional"
+        )));
+    }
+    array.call_method0("ravel")?.call_method1("astype", ("float64",))?.call_method0("tolist")?.extract()
 }
 
 /// Bytes of a value, for pickling.

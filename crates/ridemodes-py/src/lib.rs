@@ -8,6 +8,7 @@ mod modes;
 mod motions;
 mod point;
 mod sensitivities;
+mod studies;
 mod table;
 mod vehicle;
 
@@ -26,6 +27,8 @@ mod _core {
     use crate::point::OperatingPoint;
     #[pymodule_export]
     use crate::sensitivities::Sensitivities;
+    #[pymodule_export]
+    use crate::studies::{Decoupling, Sweep};
     #[pymodule_export]
     use crate::table::Table;
     #[pymodule_export]

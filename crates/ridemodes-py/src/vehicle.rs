@@ -7,9 +7,10 @@ use pyo3::types::PyMapping;
 use ridemodes::Vehicle as Core;
 use serde_json::Value;
 
-use crate::convert::{python, tree};
+use crate::convert::{numbers, python, tree};
 use crate::errors::raise;
 use crate::point::OperatingPoint;
+use crate::studies::{Decoupling, Sweep};
 use crate::table::Table;
 
 /// Reads a vehicle file.
@@ -326,6 +327,50 @@ impl Vehicle {
     /// OperatingPoint
     fn settle(&self, py: Python<'_>) -> PyResult<OperatingPoint> {
         py.detach(|| self.0.settle()).map(OperatingPoint::new).map_err(raise)
+    }
+
+    /// Varies one number and follows every mode by shape, halving steps that leave it unclear.
+    ///
+    /// Parameters
+    /// ----------
+    /// path : str
+    ///     Path of the number.
+    /// values : array_like
+    ///     Its values, in SI, in the order to be followed.
+    ///
+    /// Returns
+    /// -------
+    /// Sweep
+    ///
+    /// Raises
+    /// ------
+    /// InvalidInput
+    ///     For an unknown path, or values out of their bounds; nothing is computed then.
+    #[pyo3(signature = (path, values: "numpy.typing.ArrayLike") -> "Sweep")]
+    fn sweep(&self, py: Python<'_>, path: &str, values: &Bound<'_, PyAny>) -> PyResult<Sweep> {
+        let values = numbers(values)?;
+        py.detach(|| self.0.sweep(path, &values)).map(Sweep::new).map_err(raise)
+    }
+
+    /// For every number the value that would decouple two motions in stiffness, solved one number at a time.
+    ///
+    /// Parameters
+    /// ----------
+    /// first : str
+    ///     One of heave, pitch, roll and warp.
+    /// second : str
+    ///     Another of them.
+    ///
+    /// Returns
+    /// -------
+    /// Decoupling
+    ///
+    /// Raises
+    /// ------
+    /// InvalidInput
+    ///     For a name that is no motion.
+    fn decoupling(&self, py: Python<'_>, first: &str, second: &str) -> PyResult<Decoupling> {
+        py.detach(|| self.0.decoupling(first, second)).map(Decoupling::new).map_err(raise)
     }
 
     /// Every number with its path, value and unit, as a table.

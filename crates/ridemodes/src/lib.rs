@@ -34,6 +34,7 @@
 
 mod axes;
 mod corner_motions;
+mod decoupling;
 mod error;
 mod examples;
 mod gas;
@@ -55,6 +56,7 @@ pub use num_complex::Complex64;
 
 pub use axes::{CORNER_NAMES, CORNERS, Corner, MECHANICAL_NAMES, MOTION_NAMES, MOTIONS, PerCorner};
 pub use corner_motions::{MotionMatrix, Motions, RollStiffness};
+pub use decoupling::{Decoupling, Remedy};
 pub use error::{Error, Result, Violation};
 pub use modes::{MOTION_SHARE_NAMES, ModeKind, Modes, SHARE_NAMES};
 pub use numerics::{Dual, Scalar};

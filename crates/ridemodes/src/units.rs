@@ -84,7 +84,7 @@ pub(crate) fn read(text: &str, unit: &str) -> Result<Quantity, Misread> {
         free.0[4] = 0;
         free.1[4] = 0;
         if free.0 == free.1 {
-            hint = format!("the angle is missing or too many, {hint}");
+            hint = format!("per rad or per deg is missing or too many, {hint}");
         }
         return Err(misread(format!("\"{rest}\" does not measure what [{unit}] measures"), hint));
     }
@@ -310,7 +310,7 @@ mod tests {
     #[test]
     fn a_wrong_text_says_why() {
         assert!(read("25 N", "N/m").unwrap_err().rule.contains("does not measure"));
-        assert!(read("300 N*m", "N*m/rad").unwrap_err().hint.contains("angle"));
+        assert!(read("300 N*m", "N*m/rad").unwrap_err().hint.contains("per deg"));
         assert!(read("25", "N/m").unwrap_err().rule.contains("needs its unit"));
         assert!(read("25 furlong", "m").unwrap_err().rule.contains("not a unit"));
         assert!(read("fast", "m").unwrap_err().rule.contains("must be a number"));

@@ -13,7 +13,7 @@ const LAYERS: [&[&str]; 11] = [
     &["statics"],
     &["system"],
     &["corner_motions", "modes"],
-    &["sensitivities", "sweep"],
+    &["decoupling", "sensitivities", "sweep"],
     &["report"],
     &["examples"],
 ];

@@ -6,6 +6,7 @@
 
 mod cases;
 mod coupling;
+mod decouplings;
 mod elements;
 mod extremes;
 mod faults;

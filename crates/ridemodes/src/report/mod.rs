@@ -3,6 +3,7 @@
 mod modes;
 mod motions;
 mod sensitivities;
+mod studies;
 mod vehicle;
 
 use std::fmt;

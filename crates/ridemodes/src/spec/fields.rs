@@ -92,7 +92,7 @@ tables! {
         /// Product of inertia of roll and pitch, the integral of x·y over the mass.
         roll_pitch_product: N = number("kg*m^2", ANY, 0.0),
         /// Height of the centre of gravity above the ground.
-        cg_height: N = number("m", POSITIVE),
+        cg_height: N = number("m", Bounds::up_to(20.0)),
         /// Offset of the centre of gravity to the left of the centre line.
         cg_offset: N = number("m", ANY, 0.0),
         /// Static warp preload, (FL − FR − RL + RR)/4 of the sprung corner loads.
@@ -102,9 +102,9 @@ tables! {
     /// Axle, either with `both` corners alike or with `left` and `right` apart.
     Axle {
         /// Distance of the axle from the body's centre of gravity, ahead for the front, behind for the rear.
-        distance: N = number("m", POSITIVE),
+        distance: N = number("m", Bounds::up_to(50.0)),
         /// Track width.
-        track: N = number("m", POSITIVE),
+        track: N = number("m", Bounds::up_to(20.0)),
         /// Height of the roll centre above the ground.
         roll_centre_height: N = number("m", ANY, 0.0),
         /// Anti-roll bar.
@@ -167,25 +167,25 @@ tables! {
     /// (full piston area) and expands its `rebound` chamber (rod side).
     Cylinder {
         /// Bore.
-        bore: N = number("m", POSITIVE),
+        bore: N = number("m", Bounds::up_to(1.0)),
         /// Rod diameter, on the rebound side.
-        rod: N = number("m", NOT_NEGATIVE),
+        rod: N = number("m", Bounds::within(0.0, 1.0)),
         /// Piston travel over wheel travel.
         motion_ratio: N = number("1", POSITIVE, 1.0),
         /// Stroke; at rest the piston is in its middle. Sets the oil volume of the chambers.
-        stroke: N = number("m", NOT_NEGATIVE, 0.0),
+        stroke: N = number("m", Bounds::within(0.0, 5.0), 0.0),
     }
 
     /// Oil.
     Oil {
         /// Density at 15 °C.
-        density: N = number("kg/m^3", POSITIVE),
+        density: N = number("kg/m^3", Bounds::within(100.0, 5000.0)),
         /// Bulk modulus without air; absent means incompressible.
         bulk_modulus: Option<N> = optional("Pa", POSITIVE),
         /// Kinematic viscosity at 40 °C.
-        kinematic_viscosity: N = number("m^2/s", POSITIVE),
+        kinematic_viscosity: N = number("m^2/s", Bounds::up_to(0.1)),
         /// Kinematic viscosity at 100 °C.
-        kinematic_viscosity_hot: N = number("m^2/s", POSITIVE),
+        kinematic_viscosity_hot: N = number("m^2/s", Bounds::up_to(0.1)),
         /// Thermal expansion.
         expansion: N = number("1/K", NOT_NEGATIVE, 7e-4),
         /// Volume of entrained air per volume of oil at atmospheric pressure.
@@ -217,9 +217,9 @@ tables! {
     /// Line by its geometry.
     Line {
         /// Length.
-        length: N = number("m", POSITIVE),
+        length: N = number("m", Bounds::up_to(500.0)),
         /// Inner diameter.
-        bore: N = number("m", POSITIVE),
+        bore: N = number("m", Bounds::up_to(0.5)),
         /// How its oil is accelerated.
         inertia: Inertia = choice(Inertia),
     }
@@ -227,9 +227,9 @@ tables! {
     /// Gas accumulator. Give either `volume` or `gas_volume`.
     Accumulator {
         /// Gas volume at precharge, empty of oil.
-        volume: Option<N> = optional("m^3", POSITIVE),
+        volume: Option<N> = optional("m^3", Bounds::up_to(0.2)),
         /// Gas volume at rest under the design load.
-        gas_volume: Option<N> = optional("m^3", POSITIVE),
+        gas_volume: Option<N> = optional("m^3", Bounds::up_to(0.2)),
         /// Precharge pressure at `precharge_temperature`.
         precharge: N = pressure,
         /// Temperature at which the precharge is stated.

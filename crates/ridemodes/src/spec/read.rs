@@ -3,7 +3,7 @@
 use serde_json::{Map, Value};
 
 use super::Spec;
-use super::schema::{Described, Field, Kind, Presence, Schema, TablePresence};
+use super::schema::{Bounds, Described, Field, Kind, Presence, Schema, TablePresence};
 use super::tree::{Tree, join};
 use crate::error::Violation;
 use crate::units::{self, Reference, STANDARD_ATMOSPHERE};
@@ -207,9 +207,10 @@ impl Reading {
 
     fn missing(&mut self, path: &str, unit: &str, field: &Field, quiet: bool) {
         if !quiet {
-            self.violations.push(
-                Violation::new(path, "", "is missing").unit(unit).hint(field.meaning.trim().trim_end_matches('.')),
-            );
+            let meaning = field.meaning.trim().trim_end_matches('.');
+            // "tyre: is missing (Tyre)" says nothing more.
+            let hint = if meaning.to_lowercase() == field.name { "" } else { meaning };
+            self.violations.push(Violation::new(path, "", "is missing").unit(unit).hint(hint));
         }
     }
 
@@ -258,8 +259,30 @@ pub(crate) fn number(field: &Field, path: &str, value: &Value, atmosphere: f64) 
     } else if !si.is_finite() {
         Err(wrong("must be a finite number".into(), String::new()))
     } else {
-        Err(wrong(bounds.rule(), if si == 0.0 { "leave it out if there is none".into() } else { String::new() }))
+        let hint = match value {
+            Value::Number(number) if si != 0.0 => slip(number, unit, *bounds).unwrap_or_default(),
+            _ if si == 0.0 => "leave it out if there is none".into(),
+            _ => String::new(),
+        };
+        Err(wrong(bounds.rule(), hint))
     }
+}
+
+// A plain number out of its bounds is often one in a unit of daily use.
+fn slip(number: &serde_json::Number, unit: &str, bounds: Bounds) -> Option<String> {
+    let daily: &[&str] = match unit {
+        "m" => &["mm", "cm"],
+        "m^3" => &["L", "cm^3"],
+        "m^2/s" => &["mm^2/s"],
+        "kg/m^3" => &["kg/L"],
+        "K" => &["degC"],
+        "1" => &["%"],
+        _ => return None,
+    };
+    daily.iter().map(|daily| format!("{number} {daily}")).find_map(|text| {
+        let meant = units::read(&text, unit).ok()?.value;
+        bounds.holds(meant).then(|| format!("a plain number is in {unit}; did you mean \"{text}\"?"))
+    })
 }
 
 pub(crate) fn describe(value: &Value) -> String {

@@ -110,6 +110,11 @@ impl Bounds {
     /// More than zero.
     pub const POSITIVE: Self = Self { least: 0.0, open: true, ..Self::ANY };
 
+    /// More than zero, up to `largest`: what lies above is a slip of unit.
+    pub const fn up_to(largest: f64) -> Self {
+        Self { least: 0.0, open: true, largest }
+    }
+
     /// From `least` to `largest`, both included.
     pub const fn within(least: f64, largest: f64) -> Self {
         Self { least, open: false, largest }
