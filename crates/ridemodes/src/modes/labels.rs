@@ -58,7 +58,7 @@ pub(super) fn damped(system: &LinearSystem, modes: &[RawMode], reference: &[RawM
         labels.names.iter().map(|name| SHARE_NAMES[..7].iter().position(|known| known == name)).collect();
     let likeness = |mode: usize, other: usize| {
         let own = motion[other].map_or(share[mode][7], |motion| share[mode][motion]);
-        (assurance(system, &modes[mode].shape, &reference[other].shape) + 2.0 * own) / 3.0
+        0.2 * assurance(system, &modes[mode].shape, &reference[other].shape) + 0.8 * own
     };
     let (oscillating, real): (Vec<usize>, Vec<usize>) = (0..modes.len()).partition(|&i| modes[i].pole.im > 0.0);
     let mut result = Labels { names: vec![String::new(); modes.len()], unclear: vec![false; modes.len()] };
