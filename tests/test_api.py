@@ -118,9 +118,47 @@ def test_everything_public_is_documented():
                 assert f"{parameter} : " in document, f"{name}({parameter})"
 
 
+def test_functions_have_the_sections_of_numpydoc():
+    """numpydoc's style guide: Returns, Raises and so on, each underlined."""
+    for name in ("example", "examples", "load", "loads", "schema"):
+        function = getattr(rm, name)
+        document = inspect.getdoc(function)
+        assert "Returns\n-------" in document, name
+        parameters = inspect.signature(function).parameters
+        assert ("Parameters\n----------" in document) == bool(parameters), name
+        for parameter in parameters:
+            assert f"{parameter} : " in document, f"{name}({parameter})"
+    for name, thing in public():
+        # All methods but `save` return something.
+        if "." in name and callable(thing) and not name.startswith("plot."):
+            document = inspect.getdoc(thing)
+            assert "Returns\n-------" in document or name == "Vehicle.save", name
+
+
+def test_every_table_names_units(roadster):
+    found = {type(result): result for result in results(roadster)}
+    for kind, unit in (
+        (rm.Vehicle, "kg*m^2"),
+        (rm.OperatingPoint, "bar abs"),
+        (rm.LinearSystem, "rad"),
+        (rm.Motions, "N/mm"),
+        (rm.Modes, "Hz"),
+        (rm.StateSpace, "m/s^2"),
+        (rm.Sweep, "kg"),
+        (rm.Decoupling, "%"),
+        (rm.Sensitivities, "%"),
+    ):
+        result = found[kind]
+        assert unit in str(result), kind
+        assert unit in result._repr_html_(), kind
+
+
 def test_unknown_keywords_are_refused(roadster):
     linear = roadster.settle().linear()
     calls = [roadster.settle, linear.modes, linear.motions, linear.dynamic_coupling, rm.load]
+    calls += [rm.loads, rm.example, rm.examples, rm.schema, rm.Vehicle.from_dict, roadster.save]
+    calls += [roadster.value, roadster.with_values, roadster.with_setting, roadster.sweep]
+    calls += [linear.state_space, linear.sensitivities, linear.modes().rows]
     for call in calls:
         with pytest.raises(TypeError):
             call(unheard_of=1)

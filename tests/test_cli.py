@@ -1,5 +1,6 @@
 """The command line, as a user runs it."""
 
+import os
 import subprocess
 import sys
 
@@ -50,6 +51,37 @@ def test_faults_go_to_stderr_without_traceback(tmp_path, arguments, code, said):
     assert ended.returncode == code
     assert said in ended.stderr
     assert "Traceback" not in ended.stderr
+
+
+def test_check_lists_every_violation(tmp_path):
+    text = rm.example("roadster").to_toml()
+    text = text.replace("mass = 1080.0", "mass = -1.0", 1)
+    text = text.replace("track = 1.5\n", "trck = 1.5\n", 1)
+    (tmp_path / "bad.toml").write_text(text, encoding="utf-8")
+    ended = run("check", "bad.toml", cwd=tmp_path)
+    assert ended.returncode == 1
+    assert ended.stdout == ""
+    for path in ("body.mass", "front.track", "front.trck"):
+        assert path in ended.stderr
+
+
+def test_json_is_checked_too(tmp_path):
+    assert run("new", "car.json", "--example", "forest_truck", cwd=tmp_path).returncode == 0
+    assert run("check", "car.json", cwd=tmp_path).returncode == 0
+    (tmp_path / "car.json").write_text("{", encoding="utf-8")
+    ended = run("check", "car.json", cwd=tmp_path)
+    assert ended.returncode == 1
+    assert "line 1" in ended.stderr
+
+
+def test_report_into_an_old_code_page(tmp_path):
+    """What a redirected console of Windows is by default (common practice: cp1252)."""
+    rm.example("roadster").save(tmp_path / "car.toml")
+    command = [sys.executable, "-m", "ridemodes", "report", "car.toml"]
+    environment = {**os.environ, "PYTHONIOENCODING": "cp1252", "PYTHONUTF8": "0"}
+    ended = subprocess.run(command, capture_output=True, cwd=tmp_path, env=environment, check=False)
+    assert b"Traceback" not in ended.stderr
+    assert ended.returncode == 0
 
 
 def test_examples_are_listed(tmp_path):

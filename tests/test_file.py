@@ -102,6 +102,39 @@ def test_numbers_of_any_kind_are_taken(roadster, value):
     assert roadster.with_values({"body.mass": value}).value("body.mass") == 1100.0
 
 
+@pytest.mark.parametrize("value", [np.True_, np.array(True), np.complex128(1100)])
+# NumPy warns of the imaginary part it drops.
+@pytest.mark.filterwarnings("ignore:Casting complex values")
+def test_numpys_truth_and_complex_values_are_refused_as_pythons_are(roadster, value):
+    with pytest.raises(rm.InvalidInput, match=r"body\.mass"):
+        roadster.with_values({"body.mass": value})
+
+
+def test_bar_is_refused_with_both_readings(roadster):
+    """Atmosphere 1.01325 bar (standard atmosphere)."""
+    with pytest.raises(rm.InvalidInput) as caught:
+        roadster.with_values({"layout.pressure": "30 bar"})
+    [violation] = caught.value.violations
+    assert violation.path == "layout.pressure"
+    assert '"30 bar abs" is 30 bar absolute' in violation.hint
+    assert '"30 bar gauge" is 31.01325 bar absolute' in violation.hint
+    for text, pascal in (("30 bar abs", 30e5), ("30 bar gauge", 3101325.0)):
+        assert roadster.with_values({"layout.pressure": text}).value("layout.pressure") == pascal
+
+
+def test_text_with_a_unit_is_a_number(roadster):
+    """Definitions of the units (SI brochure; pound and inch of 1959)."""
+    for path, text, number in (
+        ("front.track", "1480 mm", 1.48),
+        ("body.mass", "2400 lb", 2400 * 0.45359237),
+        ("temperature", "25 degC", 298.15),
+        ("front.both.cylinder.bore", "1 in", 0.0254),
+        ("layout.volume", "60 cm^3", 60e-6),
+    ):
+        found = roadster.with_values({path: text}).value(path)
+        assert found == pytest.approx(number, rel=1e-15)
+
+
 def test_data_that_holds_itself_is_refused(roadster):
     data = roadster.to_dict()
     data["body"]["self"] = data

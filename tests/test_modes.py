@@ -49,6 +49,46 @@ def test_quotients_of_the_shapes(car):
         assert loss / mass == pytest.approx(2 * ratio * size, rel=1e-6)
 
 
+@pytest.mark.parametrize("damped", [True, False])
+def test_shares_are_those_of_the_shapes(car, damped):
+    """Kinetic Re(ā_i (M_a a)_i)/aᴴM_a a, strain and dissipation |row·ψ|² of each element."""
+    linear = car.settle().linear()
+    modes = linear.modes(damped=damped)
+    n = len(linear.coordinates)
+    turn = np.eye(n)
+    turn[3:7, 3:7] = T
+    mass = turn.T @ linear.mass @ turn
+    assert modes.elements == [element.name for element in linear.elements]
+    for row, shape in enumerate(modes.shape):
+        a = np.linalg.solve(turn, shape)
+        kinetic = (a.conj() * (mass @ a)).real
+        share = np.append(kinetic[:7], kinetic[7:].sum()) / kinetic.sum()
+        np.testing.assert_allclose(modes.share[row], share, rtol=0, atol=1e-9)
+        grouped = [*(share[:3] + share[3:6]), share[6], share[7]]
+        np.testing.assert_allclose(modes.motion_share[row], grouped, rtol=0, atol=1e-9)
+        for name, found in (
+            ("stiffness", modes.strain_share[row]),
+            ("damping", modes.dissipation_share[row]),
+        ):
+            each = [getattr(e, name) * abs(e.row @ shape) ** 2 for e in linear.elements]
+            if name == "damping" and not damped:
+                each = np.zeros(len(each))
+            else:
+                each = np.array(each) / sum(each)
+            np.testing.assert_allclose(found, each, rtol=0, atol=1e-9)
+
+
+def test_undamped_rows(car):
+    """Without damping: poles on the axis, real shapes, ascending, each of the seven once."""
+    modes = car.settle().linear().modes(damped=False)
+    assert (modes.pole.real == 0).all()
+    assert (modes.damping_ratio == 0).all()
+    assert (modes.shape.imag == 0).all()
+    assert (modes.frequency > 0).all()
+    assert (np.diff(modes.frequency) >= 0).all()
+    assert [len(modes.rows(label)) for label in SEVEN] == [1] * 7
+
+
 def test_matrices_are_the_sums_of_the_elements(car):
     linear = car.settle().linear()
     for name in ("mass", "damping", "stiffness"):

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import argparse
+import io
 import json
 import sys
 from pathlib import Path
@@ -124,6 +125,10 @@ def main(argv: list[str] | None = None) -> int:
         ("--example", {"default": "roadster", "help": "which example"}),
     )
     arguments = parser.parse_args(argv)
+    for stream in (sys.stdout, sys.stderr):
+        # An old code page has no ─ or ·: better a question mark than no table.
+        if isinstance(stream, io.TextIOWrapper):
+            stream.reconfigure(errors="replace")
     try:
         code: int = arguments.run(arguments)
     except (rm.RidemodesError, OSError) as error:

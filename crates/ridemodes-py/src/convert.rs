@@ -41,7 +41,11 @@ pub(crate) fn tree(data: &Bound<'_, PyAny>, depth: usize) -> PyResult<Value> {
     {
         return Ok(whole.into());
     }
-    // NumPy's scalars and whatever else converts to a float.
+    // NumPy's scalars and whatever else converts to a float; NumPy would convert truth and complex values too.
+    let kind = data.getattr("dtype").and_then(|dtype| dtype.getattr("kind")?.extract::<String>());
+    if kind.is_ok_and(|kind| !matches!(kind.as_str(), "f" | "i" | "u")) {
+        return Ok(format!("{} object", data.get_type().name()?).into());
+    }
     if data.hasattr("__float__")?
         && let Ok(number) = data.extract::<f64>()
     {

@@ -217,7 +217,9 @@ impl Shifted {
 }
 
 fn polynomial(s: Complex64, [square, linear, constant]: [f64; 3]) -> Complex64 {
-    s * s * square + s * linear + constant
+    // A part that is not there stays out even where s² is beyond the range of numbers.
+    let term = |power: Complex64, factor: f64| if factor == 0.0 { Complex64::from(0.0) } else { power * factor };
+    term(s * s, square) + term(s, linear) + constant
 }
 
 impl OilForm {
@@ -273,6 +275,12 @@ impl OilForm {
         })?;
         let taken = across.transpose() * solved;
         let d = Matrix4::from_fn(|i, j| travel[(i, j)] - taken[(i, j)]);
+        if !d.iter().all(|entry| entry.is_finite()) {
+            return Err(Error::Singular {
+                matrix: format!("dynamic stiffness of the oil at {f:e} Hz"),
+                motion: "the frequency is beyond the range of numbers".into(),
+            });
+        }
         // D is symmetric; rounding is not.
         Ok((d + d.transpose()) * Complex64::from(0.5))
     }
