@@ -252,3 +252,31 @@ def test_no_frequency_gives_nan_unannounced(name):
     except (ValueError, ArithmeticError):
         return
     assert np.isfinite(found).all()
+
+
+@pytest.mark.parametrize(
+    ("path", "number", "beyond"),
+    [
+        ("layout.accumulators.main.throttle", 1e15, 7e18),
+        ("front.both.damper.coefficient", 1e8, 1.5e15),
+    ],
+)
+def test_what_is_all_but_locked_stays_passive(roadster, path, number, beyond):
+    """`numpy.linalg.eigvals` of the state space; a passive vehicle has no growing motion."""
+    linear = roadster.with_values({path: number}).settle().linear()
+    pole = linear.modes().pole
+    ours = np.concatenate([pole, pole[pole.imag > 0].conj()])
+    theirs = np.linalg.eigvals(linear.state_space().A)
+    assert (pole.imag >= 0).all()
+    assert (pole.real <= 0).all()
+    assert len(ours) == len(theirs)
+    for own in ours[np.abs(ours) > 1]:
+        assert np.abs(theirs - own).min() < 1e-4 * abs(own)
+    # Beyond that rounding would decide, so such numbers are refused.
+    with pytest.raises(rm.InvalidInput, match="at most"):
+        roadster.with_values({path: beyond})
+
+
+def test_no_load_is_infinite_unannounced(roadster):
+    with pytest.raises(rm.InvalidInput, match="warp_preload"):
+        roadster.with_values({"body.warp_preload": -1e308})

@@ -36,12 +36,11 @@ from ._core import (
     loads,
     schema,
 )
+from ._core import VERSION as __version__
 from .errors import InvalidInput, NotConverged, ParseError, RidemodesError, Singular, Violation
 
 if TYPE_CHECKING:
     from . import plot
-
-    __version__: str
 
 __all__ = [
     "CAUTION",
@@ -63,6 +62,7 @@ __all__ = [
     "Table",
     "Vehicle",
     "Violation",
+    "__version__",
     "example",
     "examples",
     "load",
@@ -73,11 +73,7 @@ __all__ = [
 
 
 def __getattr__(name: str) -> Any:
-    # Reading the metadata and importing matplotlib take longer than all the rest.
-    if name == "__version__":
-        from importlib.metadata import version
-
-        return version("ridemodes")
+    # Importing matplotlib takes longer than all the rest.
     if name == "plot":
         from importlib import import_module
 

@@ -6,6 +6,8 @@ from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
+from ._core import VERSION
+
 if TYPE_CHECKING:
     import pandas
     import xarray
@@ -22,9 +24,7 @@ def _dataset(variables: dict[str, tuple[Any, ...]], coordinates: dict[str, Any])
         import xarray
     except ImportError as error:
         raise ImportError("to_xarray needs xarray: pip install ridemodes[xarray]") from error
-    from importlib.metadata import version
-
-    attributes = {"schema_version": SCHEMA_VERSION, "ridemodes_version": version("ridemodes")}
+    attributes = {"schema_version": SCHEMA_VERSION, "ridemodes_version": VERSION}
     data = {
         name: (dimensions, values, {"units": unit, "long_name": meaning})
         for name, (dimensions, values, unit, meaning) in variables.items()

@@ -96,7 +96,7 @@ tables! {
         /// Offset of the centre of gravity to the left of the centre line.
         cg_offset: N = number("m", ANY, 0.0),
         /// Static warp preload, (FL − FR − RL + RR)/4 of the sprung corner loads.
-        warp_preload: N = number("N", ANY, 0.0),
+        warp_preload: N = number("N", Bounds::within(-1e7, 1e7), 0.0),
     }
 
     /// Axle, either with `both` corners alike or with `left` and `right` apart.
@@ -142,7 +142,7 @@ tables! {
         /// Vertical rate.
         rate: N = number("N/m", POSITIVE),
         /// Vertical damping.
-        damping: N = number("N*s/m", NOT_NEGATIVE, 0.0),
+        damping: N = number("N*s/m", Bounds::within(0.0, 1e8), 0.0),
     }
 
     /// Suspension spring.
@@ -156,11 +156,11 @@ tables! {
     /// Suspension damper beside any cylinder.
     Damper {
         /// Force per velocity of the damper itself.
-        coefficient: N = number("N*s/m", NOT_NEGATIVE),
+        coefficient: N = number("N*s/m", Bounds::within(0.0, 1e8)),
         /// Damper travel over wheel travel.
         motion_ratio: N = number("1", POSITIVE, 1.0),
         /// Rate of a mount in series with the damper; absent means rigid.
-        mount_rate: Option<N> = optional("N/m", POSITIVE),
+        mount_rate: Option<N> = optional("N/m", Bounds::within(1e2, 1e10)),
     }
 
     /// Double-acting hydraulic cylinder between wheel and body; bump squeezes its `bump` chamber
@@ -209,7 +209,7 @@ tables! {
     /// Way from a cylinder chamber to the hub of its circuit.
     Port {
         /// Resistance of the port throttle.
-        throttle: N = number("Pa*s/m^3", NOT_NEGATIVE, 0.0),
+        throttle: N = number("Pa*s/m^3", Bounds::within(0.0, 1e15), 0.0),
         /// Line; absent means the chamber is at the hub.
         line: Option<Line<N>> = maybe(Line),
     }
@@ -219,7 +219,7 @@ tables! {
         /// Length.
         length: N = number("m", Bounds::up_to(500.0)),
         /// Inner diameter.
-        bore: N = number("m", Bounds::up_to(0.5)),
+        bore: N = number("m", Bounds::within(5e-4, 0.5)),
         /// How its oil is accelerated.
         inertia: Inertia = choice(Inertia),
     }
@@ -237,7 +237,7 @@ tables! {
         /// Polytropic exponent of the gas: 1 isothermal, 1.4 adiabatic.
         exponent: N = number("1", Bounds::within(1.0, 2.5), 1.4),
         /// Resistance of the throttle before the accumulator.
-        throttle: N = number("Pa*s/m^3", NOT_NEGATIVE, 0.0),
+        throttle: N = number("Pa*s/m^3", Bounds::within(0.0, 1e15), 0.0),
         /// Line between hub and accumulator.
         line: Option<Line<N>> = maybe(Line),
     }
