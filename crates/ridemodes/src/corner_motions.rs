@@ -97,11 +97,15 @@ pub(crate) fn in_motions(at_wheels: &Matrix4<f64>) -> Matrix4<f64> {
 }
 
 impl LinearSystem {
-    /// Stiffness and damping of the suspension in the four motions.
+    /// Stiffness and damping of the suspension in the four motions. Slow lines are shut.
     ///
     /// # Errors
     /// [`Error::Singular`](crate::Error::Singular) where the body is free.
     pub fn motions(&self) -> Result<Motions> {
+        self.with_slow_lines_shut()?.all_motions()
+    }
+
+    fn all_motions(&self) -> Result<Motions> {
         let still = self.quasi_static()?;
         let oil = |element: &Element| element.kind.is_hydraulic();
         let conventional = |element: &Element| !element.kind.is_hydraulic();

@@ -35,6 +35,7 @@
 mod axes;
 mod corner_motions;
 mod decoupling;
+mod equivalent;
 mod error;
 mod examples;
 mod gas;
@@ -62,7 +63,7 @@ pub use modes::{MOTION_SHARE_NAMES, ModeKind, Modes, SHARE_NAMES};
 pub use numerics::{Dual, Scalar};
 pub use report::{CAUTION, Table, Tables};
 pub use sensitivities::Sensitivities;
-pub use statics::{AccumulatorState, OperatingPoint};
+pub use statics::{AccumulatorState, ClosedOff, OperatingPoint, SlowLine};
 pub use sweep::Sweep;
 pub use system::{Element, ElementKind, LinearSystem, StateSpace};
 pub use units::{STANDARD_ATMOSPHERE, STANDARD_GRAVITY};

@@ -12,7 +12,7 @@ use crate::corner_motions::in_motions;
 use crate::error::Result;
 use crate::modes::Modes;
 use crate::numerics::{Dual, Scalar};
-use crate::system::{Assembly, Element, LinearSystem, QuasiStatic, assemble};
+use crate::system::{Assembly, Element, LinearSystem, QuasiStatic, SlowLines, assemble};
 
 /// Derivatives with respect to every number of the vehicle.
 ///
@@ -65,7 +65,8 @@ impl LinearSystem {
         let numbers = vehicle.numbers();
         let modes = self.modes()?;
         let motions = self.motions()?;
-        let still = self.quasi_static()?;
+        let shut = self.with_slow_lines_shut()?;
+        let still = shut.quasi_static()?;
         let slopes: Vec<Complex64> = (0..modes.len()).map(|row| slope(self, &modes, row)).collect();
         let repeated: Vec<bool> = (0..modes.len()).map(|row| is_repeated(&modes, row, slopes[row])).collect();
         let parameters = vehicle.parameters();
@@ -94,10 +95,15 @@ impl LinearSystem {
                 continue;
             }
             seeded[slot] = Dual::variable(numbers[slot]);
-            let change = assemble(structure, &seeded)?;
-            seeded[slot] = Dual::constant(numbers[slot]);
+            let change = assemble(structure, &seeded, SlowLines::Flow)?;
             result.differentiate_modes(place, &change, &slopes);
-            result.differentiate_motions(place, &change, self, still);
+            if std::ptr::eq(shut, self) {
+                result.differentiate_motions(place, &change, self, still);
+            } else {
+                let change = assemble(structure, &seeded, SlowLines::Shut)?;
+                result.differentiate_motions(place, &change, shut, still);
+            }
+            seeded[slot] = Dual::constant(numbers[slot]);
         }
         Ok(result)
     }

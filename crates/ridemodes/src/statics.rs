@@ -6,6 +6,7 @@ use serde::{Deserialize, Serialize};
 
 use crate::axes::{CORNERS, PerCorner};
 use crate::error::Result;
+use crate::hydraulics::{Network, NetworkValues, Store, Way};
 use crate::numerics::Scalar;
 use crate::spec::{Slot, Spec};
 use crate::units::STANDARD_GRAVITY;
@@ -66,6 +67,33 @@ pub struct AccumulatorState {
     pub empty_pressure: f64,
 }
 
+/// A slow line between two parts of the oil.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
+pub struct SlowLine {
+    /// Path of the line, e.g. `lines.balance`.
+    pub name: String,
+    /// Its resistance [Pa·s/m³].
+    pub resistance: f64,
+    /// Time in which a difference of pressure falls to 1/e with the wheels held and other slow lines shut,
+    /// R C_a C_b/(C_a + C_b) [s]: of two equal accumulators R C/2.
+    pub time_constant: f64,
+}
+
+/// Oil on one side of a line that is shut.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
+pub struct ClosedOff {
+    /// Lines whose closing bounds it.
+    pub lines: Vec<String>,
+    /// Its nodes.
+    pub nodes: Vec<String>,
+    /// Its accumulators.
+    pub accumulators: Vec<String>,
+    /// Absolute pressure [Pa].
+    pub pressure: f64,
+    /// Compliance of all that it holds [m³/Pa].
+    pub compliance: f64,
+}
+
 /// Where and under which loads the vehicle stands.
 ///
 /// It is the design condition: no deflection, system pressures and temperature as the file gives
@@ -96,6 +124,12 @@ pub struct OperatingPoint {
     pub gas_volume: Vec<f64>,
     /// Accumulators, in the order of circuits and names.
     pub accumulators: Vec<AccumulatorState>,
+    /// Lines that only balance slowly.
+    pub slow_lines: Vec<SlowLine>,
+    /// What lines that are shut have closed off.
+    pub closed_off: Vec<ClosedOff>,
+    /// Dry friction of damper and cylinder at each wheel, ± [N]: within this band a corner may stand.
+    pub friction: PerCorner<f64>,
     /// Absolute pressure of the air around [Pa].
     pub atmosphere: f64,
     /// Temperature of gas and oil [K].
@@ -146,6 +180,13 @@ impl Vehicle {
         for (reference, state) in network.accumulators.iter().zip(&accumulators) {
             gas_volume[reference.circuit] += state.gas_volume;
         }
+        let friction = PerCorner::new(|corner| {
+            let Some(corner) = spec.corner(corner) else { return 0.0 };
+            let damper = corner.damper.as_ref().map(|damper| value(damper.friction) * value(damper.motion_ratio));
+            let seals = corner.cylinder.as_ref().map(|own| value(own.friction) * value(own.motion_ratio));
+            damper.unwrap_or(0.0) + seals.unwrap_or(0.0)
+        });
+        let (slow_lines, closed_off) = lines_apart(network, &network.values(spec, numbers), numbers);
         let mut warnings = Vec::new();
         for corner in CORNERS {
             let name = corner.name();
@@ -193,11 +234,65 @@ impl Vehicle {
             pressure: spec.circuits.0.values().map(|circuit| value(circuit.pressure)).collect(),
             gas_volume,
             accumulators,
+            slow_lines,
+            closed_off,
+            friction,
             atmosphere,
             temperature,
             warnings,
         })
     }
+}
+
+// Slow lines with their time constants, and what shut lines close off.
+fn lines_apart(network: &Network, values: &NetworkValues<f64>, numbers: &[f64]) -> (Vec<SlowLine>, Vec<ClosedOff>) {
+    let compliance = |region: &[usize], own: usize| -> f64 {
+        (0..region.len()).filter(|&node| region[node] == own).map(|node| values.node_compliance(node)).sum()
+    };
+    let fast = network.regions(|line| !values.lines[line].closed && !values.lines[line].slow);
+    let slow_lines = network
+        .ways
+        .iter()
+        .filter(|way| values.lines[way.lines.start].slow && !values.lines[way.lines.start].closed)
+        .map(|way| {
+            let parts = || way.lines.clone().map(|line| values.lines[line]);
+            let resistance: f64 = parts().map(|line| line.throttle + line.valve + line.pipe).sum();
+            let line = &network.lines[way.lines.start];
+            let (a, b) = (fast[line.from], fast[line.to]);
+            let (from, to) = (compliance(&fast, a), compliance(&fast, b));
+            let series = if a == b || from + to == 0.0 { 0.0 } else { from * to / (from + to) };
+            SlowLine { name: way.name.to_string(), resistance, time_constant: resistance * series }
+        })
+        .collect();
+    let shut: Vec<&Way> = network.ways.iter().filter(|way| values.lines[way.lines.start].closed).collect();
+    let region = network.regions(|line| !values.lines[line].closed);
+    let count = region.iter().max().map_or(0, |last| last + 1);
+    let bounds = |way: &Way, own: usize| {
+        let line = &network.lines[way.lines.start];
+        region[line.from] == own || region[line.to] == own
+    };
+    let closed_off = (0..count)
+        .filter_map(|own| {
+            let lines: Vec<String> =
+                shut.iter().filter(|way| bounds(way, own)).map(|way| way.name.to_string()).collect();
+            let nodes: Vec<usize> = (0..region.len()).filter(|&node| region[node] == own).collect();
+            let first = *nodes.first().filter(|_| !lines.is_empty())?;
+            let names = nodes.iter().map(|&node| network.nodes[node].name.to_string()).collect();
+            let gas =
+                nodes.iter().flat_map(|&node| &network.nodes[node].stores).filter_map(|named| match named.store {
+                    Store::Gas(index) => Some(network.accumulators[index].name.to_string()),
+                    _ => None,
+                });
+            Some(ClosedOff {
+                accumulators: gas.collect(),
+                lines,
+                nodes: names,
+                pressure: numbers[network.nodes[first].pressure.0],
+                compliance: compliance(&region, own),
+            })
+        })
+        .collect();
+    (slow_lines, closed_off)
 }
 
 impl OperatingPoint {

@@ -7,7 +7,7 @@ use std::path::{Path, PathBuf};
 const LAYERS: [&[&str]; 11] = [
     &["error", "axes", "units", "numerics"],
     &["spec"],
-    &["gas"],
+    &["equivalent", "gas"],
     &["hydraulics"],
     &["vehicle"],
     &["statics"],

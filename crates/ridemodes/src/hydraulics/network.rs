@@ -2,55 +2,26 @@
 
 use std::sync::Arc;
 
+use super::chamber::Chamber;
 use super::oil::{Oil, pipe_area};
-use crate::axes::Corner;
+use super::valve;
 use crate::gas::{self, Fill, GasState};
 use crate::numerics::Scalar;
-use crate::spec::{Inertia, Slot, Spec, chamber};
-
-/// A cylinder chamber.
-#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
-pub(crate) struct Chamber {
-    pub corner: Corner,
-    /// Whether bump squeezes it.
-    pub bump: bool,
-}
-
-impl Chamber {
-    /// E.g. `front_left_bump`.
-    pub(crate) fn name(self) -> String {
-        format!("{}_{}", self.corner.name(), if self.bump { "bump" } else { "rebound" })
-    }
-
-    /// Pressed area at the wheel, +A·MR where bump squeezes the chamber, −A·MR where it expands it
-    /// [m²]; the rod is on the rebound side.
-    pub(crate) fn signed_area<T: Scalar>(self, spec: &Spec<Slot>, numbers: &[T]) -> T {
-        self.cylinder_area(spec, numbers).map_or(
-            T::zero(),
-            |(area, ratio)| {
-                if self.bump { area * ratio } else { -(area * ratio) }
-            },
-        )
-    }
-
-    fn cylinder_area<T: Scalar>(self, spec: &Spec<Slot>, numbers: &[T]) -> Option<(T, T)> {
-        let cylinder = spec.corner(self.corner)?.cylinder.as_ref()?;
-        let value = |slot: Slot| numbers[slot.0];
-        let bore = pipe_area(value(cylinder.bore));
-        let area = if self.bump { bore } else { bore - pipe_area(value(cylinder.rod)) };
-        Some((area, value(cylinder.motion_ratio)))
-    }
-}
+use crate::spec::{self, Inertia, Slot, Spec, Valve};
 
 /// What stores volume at a node.
 #[derive(Debug)]
 pub(crate) enum Store {
     /// Oil beside chambers and lines.
     Extra(Slot),
+    /// Swell of hoses.
+    Swell(Slot),
     /// Half the stroke of a chamber.
     Chamber(Chamber),
-    /// Half a line.
-    HalfLine { length: Slot, bore: Slot },
+    /// A share of the oil in a pipe.
+    PipeOil { pipe: usize, share: f64 },
+    /// A share of the swell of a pipe.
+    PipeSwell { pipe: usize, share: f64 },
     /// Gas of an accumulator; its position among the network's.
     Gas(usize),
 }
@@ -71,15 +42,28 @@ pub(crate) struct Node {
     pub stores: Vec<NamedStore>,
 }
 
+/// A line between two nodes; a way of the file is one of them or, cut into pieces, several.
 #[derive(Debug)]
 pub(crate) struct Line {
     pub name: Arc<str>,
     pub throttle_name: Arc<str>,
+    pub valve_name: Arc<str>,
     pub pipe_name: Arc<str>,
     pub from: usize,
     pub to: usize,
-    pub throttle: Slot,
-    pub pipe: Option<(Slot, Slot, Inertia)>,
+    pub throttle: Option<Slot>,
+    pub valve: Option<Box<Valve<Slot>>>,
+    /// The pipe and the share of it that this line is.
+    pub pipe: Option<(usize, f64)>,
+    pub closed: Option<Slot>,
+    pub slow: Option<Slot>,
+}
+
+/// A way of the file: the lines it consists of.
+#[derive(Debug)]
+pub(crate) struct Way {
+    pub name: Arc<str>,
+    pub lines: std::ops::Range<usize>,
 }
 
 #[derive(Debug)]
@@ -87,28 +71,39 @@ pub(crate) struct AccumulatorRef {
     pub name: Arc<str>,
     pub circuit: usize,
     pub pressure: Slot,
-    fill: Fill<Slot>,
-    precharge: Slot,
-    precharge_temperature: Slot,
-    exponent: Slot,
+    pub(super) fill: Fill<Slot>,
+    pub(super) precharge: Slot,
+    pub(super) precharge_temperature: Slot,
+    pub(super) exponent: Slot,
 }
 
-/// Nodes, lines and accumulators in a fixed order: circuits by name, and in each its hub, its
-/// chambers and its accumulators.
+/// Nodes, lines and accumulators in a fixed order.
 #[derive(Debug, Default)]
 pub(crate) struct Network {
     pub circuits: Vec<Arc<str>>,
     pub nodes: Vec<Node>,
     pub lines: Vec<Line>,
+    pub ways: Vec<Way>,
+    pub pipes: Vec<spec::Line<Slot>>,
     pub accumulators: Vec<AccumulatorRef>,
 }
 
-/// Resistance and inertance of a line.
+/// Resistances and inertance of a line, and whether it is shut.
 #[derive(Clone, Copy, Debug)]
 pub(crate) struct LineValues<T> {
     pub throttle: T,
-    pub resistance: T,
+    pub valve: T,
+    pub pipe: T,
     pub inertance: T,
+    pub closed: bool,
+    pub slow: bool,
+}
+
+impl<T: Scalar> LineValues<T> {
+    /// Whether it joins its nodes: neither resistance nor inertance.
+    pub(crate) fn is_ideal(&self) -> bool {
+        [self.throttle, self.valve, self.pipe, self.inertance].iter().all(|part| part.value() == 0.0)
+    }
 }
 
 /// Numbers of the network at its design condition.
@@ -118,140 +113,111 @@ pub(crate) struct NetworkValues<T> {
     pub lines: Vec<LineValues<T>>,
 }
 
+impl<T: Scalar> NetworkValues<T> {
+    /// Compliance of a node [m³/Pa].
+    pub(crate) fn node_compliance(&self, node: usize) -> T {
+        let mut total = T::zero();
+        for &store in &self.compliance[node] {
+            total += store;
+        }
+        total
+    }
+}
+
 impl Network {
-    /// Lays out the graph of a vehicle whose groups are written out.
-    pub(crate) fn new(spec: &Spec<Slot>) -> Self {
-        let mut network = Self::default();
-        for (name, circuit) in &spec.circuits.0 {
-            let index = network.circuits.len();
-            network.circuits.push(name.as_str().into());
-            let base = format!("circuits.{name}");
-            let hub = network.nodes.len();
-            network.nodes.push(Node {
-                name: base.as_str().into(),
-                circuit: index,
-                pressure: circuit.pressure,
-                chambers: Vec::new(),
-                stores: vec![NamedStore { name: format!("{base}.oil").into(), store: Store::Extra(circuit.volume) }],
-            });
-            for (key, port) in &circuit.chambers.0 {
-                let Some((corner, bump)) = chamber(key) else { continue };
-                let path = format!("{base}.chambers.{key}");
-                let node = network.branch(&path, hub, port.throttle, port.line.as_ref());
-                network.nodes[node].chambers.push(Chamber { corner, bump });
-                network.nodes[node].stores.push(NamedStore {
-                    name: format!("{path}.oil").into(),
-                    store: Store::Chamber(Chamber { corner, bump }),
-                });
-            }
-            for (key, accumulator) in &circuit.accumulators.0 {
-                let path = format!("{base}.accumulators.{key}");
-                let node = network.branch(&path, hub, accumulator.throttle, accumulator.line.as_ref());
-                let fill = match (accumulator.volume, accumulator.gas_volume) {
-                    (Some(volume), _) => Fill::Precharge(volume),
-                    (None, Some(volume)) => Fill::Rest(volume),
-                    (None, None) => continue,
-                };
-                network.nodes[node].stores.push(NamedStore {
-                    name: format!("{path}.gas").into(),
-                    store: Store::Gas(network.accumulators.len()),
-                });
-                network.accumulators.push(AccumulatorRef {
-                    name: path.as_str().into(),
-                    circuit: index,
-                    pressure: circuit.pressure,
-                    fill,
-                    precharge: accumulator.precharge,
-                    precharge_temperature: accumulator.precharge_temperature,
-                    exponent: accumulator.exponent,
-                });
-            }
-        }
-        network
-    }
-
-    // A node at the end of a way from the hub. Volume of the way is halved to its ends.
-    fn branch(&mut self, path: &str, hub: usize, throttle: Slot, line: Option<&crate::spec::Line<Slot>>) -> usize {
-        let node = self.nodes.len();
-        let half = |end: &str, line: &crate::spec::Line<Slot>| NamedStore {
-            name: format!("{path}.line.oil_{end}").into(),
-            store: Store::HalfLine { length: line.length, bore: line.bore },
-        };
-        self.nodes.push(Node {
-            name: path.into(),
-            circuit: self.nodes[hub].circuit,
-            pressure: self.nodes[hub].pressure,
-            chambers: Vec::new(),
-            stores: line.map(|line| half("far", line)).into_iter().collect(),
-        });
-        if let Some(line) = line {
-            self.nodes[hub].stores.push(half("hub", line));
-        }
-        self.lines.push(Line {
-            name: path.into(),
-            throttle_name: format!("{path}.throttle").into(),
-            pipe_name: format!("{path}.line").into(),
-            from: hub,
-            to: node,
-            throttle,
-            pipe: line.map(|line| (line.length, line.bore, line.inertia)),
-        });
-        node
-    }
-
     /// Compliances, resistances, inertances and gas at the design condition.
     pub(crate) fn values<T: Scalar>(&self, spec: &Spec<Slot>, numbers: &[T]) -> NetworkValues<T> {
         let value = |slot: Slot| numbers[slot.0];
         let temperature = value(spec.temperature);
-        let oil = spec.oil.as_ref().map(|oil| Oil::new(oil, numbers, temperature, value(spec.atmosphere)));
+        let Some(oil) = &spec.oil else { return NetworkValues { compliance: Vec::new(), lines: Vec::new() } };
+        let oil = Oil::new(oil, numbers, temperature, value(spec.atmosphere));
         let gas: Vec<GasState<T>> = self.accumulators.iter().map(|a| a.gas(numbers, temperature)).collect();
         let store = |store: &Store, pressure: T| {
             let volume = match store {
                 Store::Extra(volume) => value(*volume),
                 Store::Chamber(chamber) => chamber.rest_volume(spec, numbers),
-                Store::HalfLine { length, bore } => pipe_area(value(*bore)) * value(*length) * 0.5,
+                Store::PipeOil { pipe, share } => pipe_volume(&self.pipes[*pipe], numbers) * *share,
+                Store::PipeSwell { pipe, share } => {
+                    let pipe = &self.pipes[*pipe];
+                    let swell = pipe.length.map_or(T::zero(), |length| value(pipe.swell) * value(length));
+                    return (swell + value(pipe.compliance)) * *share;
+                }
+                Store::Swell(slot) => return value(*slot),
                 Store::Gas(index) => return gas[*index].compliance,
             };
             // C = V/β_e
-            oil.as_ref().map_or(T::zero(), |oil| volume * oil.compressibility(pressure))
+            volume * oil.compressibility(pressure)
         };
         let compliance = self
             .nodes
             .iter()
             .map(|node| node.stores.iter().map(|named| store(&named.store, value(node.pressure))).collect())
             .collect();
+        let is_true = |flag: Option<Slot>| flag.is_some_and(|flag| numbers[flag.0].value() == 1.0);
         let lines = self
             .lines
             .iter()
             .map(|line| {
-                let throttle = value(line.throttle);
-                let none = LineValues { throttle, resistance: T::zero(), inertance: T::zero() };
-                let (Some((length, bore, inertia)), Some(oil)) = (line.pipe, &oil) else { return none };
-                let plug = oil.inertance(value(length), value(bore));
+                let (pipe, inertance) = line.pipe.map_or((T::zero(), T::zero()), |(pipe, share)| {
+                    let (resistance, inertance) = pipe_values(&self.pipes[pipe], numbers, &oil);
+                    (resistance * share, inertance * share)
+                });
                 LineValues {
-                    throttle,
-                    resistance: oil.resistance(value(length), value(bore)),
-                    inertance: match inertia {
-                        Inertia::Plug => plug,
-                        Inertia::Developed => plug * (4.0 / 3.0),
-                        Inertia::None => T::zero(),
-                    },
+                    throttle: line.throttle.map_or(T::zero(), value),
+                    valve: line.valve.as_ref().map_or(T::zero(), |valve| valve::resistance(valve, numbers, &oil)),
+                    pipe,
+                    inertance,
+                    closed: is_true(line.closed),
+                    slow: is_true(line.slow),
                 }
             })
             .collect();
         NetworkValues { compliance, lines }
     }
+
+    /// The connected region of each node, numbered from 0, with the lines that `open` takes.
+    pub(crate) fn regions(&self, open: impl Fn(usize) -> bool) -> Vec<usize> {
+        let mut region: Vec<usize> = (0..self.nodes.len()).collect();
+        for (_, line) in self.lines.iter().enumerate().filter(|(index, _)| open(*index)) {
+            let (a, b) = (region[line.from], region[line.to]);
+            let (keep, drop) = (a.min(b), a.max(b));
+            for place in &mut region {
+                if *place == drop {
+                    *place = keep;
+                }
+            }
+        }
+        let mut firsts = region.clone();
+        firsts.sort_unstable();
+        firsts.dedup();
+        region.iter().map(|first| firsts.binary_search(first).unwrap_or(0)).collect()
+    }
 }
 
-impl Chamber {
-    // Oil in the chamber with the piston in the middle of its stroke [m³].
-    fn rest_volume<T: Scalar>(self, spec: &Spec<Slot>, numbers: &[T]) -> T {
-        let stroke = spec.corner(self.corner).and_then(|corner| Some(corner.cylinder.as_ref()?.stroke));
-        match (self.cylinder_area(spec, numbers), stroke) {
-            (Some((area, _)), Some(stroke)) => area * numbers[stroke.0] * 0.5,
-            _ => T::zero(),
-        }
+// Oil volume: as given, or A L.
+fn pipe_volume<T: Scalar>(pipe: &spec::Line<Slot>, numbers: &[T]) -> T {
+    let value = |slot: Slot| numbers[slot.0];
+    match (pipe.volume, pipe.length, pipe.bore) {
+        (Some(volume), ..) => value(volume),
+        (None, Some(length), Some(bore)) => pipe_area(value(bore)) * value(length),
+        _ => T::zero(),
     }
+}
+
+// Resistance and inertance: as given, or from geometry.
+fn pipe_values<T: Scalar>(pipe: &spec::Line<Slot>, numbers: &[T], oil: &Oil<T>) -> (T, T) {
+    let value = |slot: Slot| numbers[slot.0];
+    let geometry = pipe.length.zip(pipe.bore).map(|(length, bore)| (value(length), value(bore)));
+    let from_geometry = |law: &dyn Fn(T, T) -> T| geometry.map_or(T::zero(), |(length, bore)| law(length, bore));
+    let resistance = pipe.resistance.map_or_else(|| from_geometry(&|length, bore| oil.resistance(length, bore)), value);
+    let share = match pipe.inertia {
+        Inertia::Plug => 1.0,
+        Inertia::Developed => 4.0 / 3.0,
+        Inertia::None => 0.0,
+    };
+    let inertance =
+        pipe.inertance.map_or_else(|| from_geometry(&|length, bore| oil.inertance(length, bore) * share), value);
+    (resistance, inertance)
 }
 
 impl AccumulatorRef {

@@ -4,7 +4,8 @@
 //! removes one of them; what then circulates without storing anything is found. All of it is done on
 //! the incidence of the graph, with entries −1, 0, +1, so it is exact and has no derivative.
 
-use super::network::{Chamber, Network};
+use super::chamber::Chamber;
+use super::network::Network;
 use crate::error::{Error, Result};
 
 /// A quantity as a sum over kept line volumes and chamber volumes.
@@ -37,16 +38,17 @@ pub(crate) struct Reduction {
     pub circulations: Vec<(usize, Vec<f64>)>,
 }
 
-/// Reduces the network. `ideal` and `inertial` say it of each line, `compliant` of each node,
+/// Reduces the network. `open`, `ideal` and `inertial` say it of each line, `compliant` of each node,
 /// `area` gives a chamber's signed area at the wheel.
 pub(crate) fn reduce(
     network: &Network,
+    open: &[bool],
     ideal: &[bool],
     inertial: &[bool],
     compliant: &[bool],
     area: impl Fn(Chamber) -> f64,
 ) -> Result<Reduction> {
-    let pool_of = merge(network, ideal);
+    let pool_of = network.regions(|line| open[line] && ideal[line]);
     let pools: Vec<Vec<usize>> = {
         let count = pool_of.iter().max().map_or(0, |last| last + 1);
         let mut pools = vec![Vec::new(); count];
@@ -55,7 +57,7 @@ pub(crate) fn reduce(
         }
         pools
     };
-    let lines: Vec<usize> = (0..network.lines.len()).filter(|&line| !ideal[line]).collect();
+    let lines: Vec<usize> = (0..network.lines.len()).filter(|&line| open[line] && !ideal[line]).collect();
     let chambers: Vec<(Chamber, usize)> = network
         .nodes
         .iter()
@@ -126,23 +128,6 @@ pub(crate) fn reduce(
     let kept: Vec<usize> = kept_columns.iter().map(|&column| lines[column]).collect();
     let circulations = circulations(&reduced, &kept, inertial);
     Ok(Reduction { kept, pools: reduced, moved, circulations })
-}
-
-// Pool of each node once ideal pipes have merged theirs.
-fn merge(network: &Network, ideal: &[bool]) -> Vec<usize> {
-    let mut pool: Vec<usize> = (0..network.nodes.len()).collect();
-    for (line, _) in network.lines.iter().zip(ideal).filter(|(_, ideal)| **ideal) {
-        let (keep, drop) = (pool[line.from].min(pool[line.to]), pool[line.from].max(pool[line.to]));
-        for place in &mut pool {
-            if *place == drop {
-                *place = keep;
-            }
-        }
-    }
-    let mut names = pool.clone();
-    names.sort_unstable();
-    names.dedup();
-    pool.iter().map(|place| names.binary_search(place).unwrap_or(0)).collect()
 }
 
 // Gauss–Jordan elimination with pivots in the given columns, the pivot rows first. On an incidence

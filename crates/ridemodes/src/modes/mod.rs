@@ -101,24 +101,40 @@ impl LinearSystem {
     pub fn modes_of(&self, kind: ModeKind) -> Result<Modes> {
         match kind {
             ModeKind::Undamped => {
-                let modes = undamped::solve(self)?;
-                let labels = labels::undamped(self, &modes);
-                Ok(Modes::new(self, kind, modes, labels))
+                let shut = self.with_slow_lines_shut()?;
+                let modes = undamped::solve(shut)?;
+                let labels = labels::undamped(shut, &modes);
+                Ok(Modes::new(shut, kind, modes, labels))
             }
             ModeKind::Locked => {
-                let locked = self.locked()?;
+                let locked = self.with_slow_lines_shut()?.locked()?;
                 let modes = undamped::solve(&locked)?;
                 let labels = labels::undamped(&locked, &modes);
                 Ok(Modes::new(&locked, kind, modes, labels))
             }
             ModeKind::Damped => {
-                let reference = undamped::solve(self)?;
-                let names = labels::undamped(self, &reference);
+                let shut = self.with_slow_lines_shut()?;
+                let mut reference = undamped::solve(shut)?;
+                let names = labels::undamped(shut, &reference);
+                if !std::ptr::eq(shut, self) {
+                    // The volumes of shut lines stand still.
+                    for mode in &mut reference {
+                        mode.shape = self.spread(shut, &mode.shape);
+                    }
+                }
                 let modes = damped::solve(self)?;
                 let labels = labels::damped(self, &modes, &reference, &names);
                 Ok(Modes::new(self, kind, modes, labels))
             }
         }
+    }
+}
+
+impl LinearSystem {
+    // A shape over the coordinates of a system with fewer, over all of them.
+    fn spread(&self, part: &Self, shape: &[Complex64]) -> Vec<Complex64> {
+        let place = |name: &String| part.coordinates().iter().position(|known| known == name);
+        self.coordinates().iter().map(|name| place(name).map_or(Complex64::ZERO, |i| shape[i])).collect()
     }
 }
 

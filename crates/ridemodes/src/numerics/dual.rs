@@ -105,6 +105,9 @@ impl Scalar for Dual {
     fn value(self) -> f64 {
         self.value
     }
+    fn is_zero(self) -> bool {
+        self.value == 0.0 && self.derivative == 0.0
+    }
     fn sqrt(self) -> Self {
         let root = self.value.sqrt();
         self.chain(root, 0.5 / root)
@@ -119,6 +122,13 @@ impl Scalar for Dual {
     fn powf(self, exponent: f64) -> Self {
         self.chain(self.value.powf(exponent), exponent * self.value.powf(exponent - 1.0))
     }
+    fn erf(self) -> Self {
+        // d erf/dx = 2/√π e^(−x²)
+        self.chain(libm::erf(self.value), std::f64::consts::FRAC_2_SQRT_PI * (-self.value * self.value).exp())
+    }
+    fn asin(self) -> Self {
+        self.chain(self.value.asin(), 1.0 / (1.0 - self.value * self.value).sqrt())
+    }
 }
 
 #[cfg(test)]
@@ -129,7 +139,8 @@ mod tests {
     #[test]
     fn derivatives_match_central_differences() {
         fn all<T: Scalar>(x: T) -> T {
-            let y = (x * 2.0 + 1.0).sqrt() / (x - 0.25) + x.exp() * x.ln() - x.powf(1.4);
+            let y = (x * 2.0 + 1.0).sqrt() / (x - 0.25) + x.exp() * x.ln()
+                - x.powf(1.4) * (x / 3.0).erf() * (x / 5.0).asin();
             -(y.square() + T::constant(3.0) * x) / 2.0
         }
         for x in [0.6, 1.3, 4.0] {

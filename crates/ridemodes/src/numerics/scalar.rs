@@ -23,6 +23,8 @@ pub trait Scalar:
     fn constant(value: f64) -> Self;
     /// The value that decides branches.
     fn value(self) -> f64;
+    /// Whether it is zero and does not change either.
+    fn is_zero(self) -> bool;
     /// Square root.
     fn sqrt(self) -> Self;
     /// Exponential.
@@ -31,6 +33,10 @@ pub trait Scalar:
     fn ln(self) -> Self;
     /// A real power with a constant exponent.
     fn powf(self, exponent: f64) -> Self;
+    /// Error function.
+    fn erf(self) -> Self;
+    /// Arc sine, for values within −1 and 1.
+    fn asin(self) -> Self;
 
     /// Zero.
     fn zero() -> Self {
@@ -55,6 +61,9 @@ impl Scalar for f64 {
     fn value(self) -> f64 {
         self
     }
+    fn is_zero(self) -> bool {
+        self == 0.0
+    }
     fn sqrt(self) -> Self {
         f64::sqrt(self)
     }
@@ -66,5 +75,11 @@ impl Scalar for f64 {
     }
     fn powf(self, exponent: f64) -> Self {
         f64::powf(self, exponent)
+    }
+    fn erf(self) -> Self {
+        libm::erf(self)
+    }
+    fn asin(self) -> Self {
+        f64::asin(self)
     }
 }

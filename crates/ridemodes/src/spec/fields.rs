@@ -4,13 +4,16 @@ use std::collections::BTreeMap;
 
 use serde::{Deserialize, Serialize};
 
-use super::schema::{Bounds, Choice, Described, Field, Kind, Named, Presence, Schema, TablePresence, tables};
+use super::schema::{Bounds, Choice, Described, Field, Flag, Kind, Named, Presence, Schema, TablePresence, tables};
 use crate::axes::Corner;
 use crate::units::STANDARD_ATMOSPHERE;
 
 const ANY: Bounds = Bounds::ANY;
 const NOT_NEGATIVE: Bounds = Bounds::NOT_NEGATIVE;
 const POSITIVE: Bounds = Bounds::POSITIVE;
+const RESISTANCE: Bounds = Bounds::within(0.0, 1e15);
+const COMPLIANCE: Bounds = Bounds::within(0.0, 1e-6);
+const OPENING: Bounds = Bounds::up_to(1e15);
 
 macro_rules! words {
     ($( $(#[doc = $doc:literal])+ $name:ident { $( $(#[doc = $meaning:literal])+ $variant:ident = $word:literal, )+ } )+) => { $(
@@ -33,6 +36,38 @@ words! {
         Developed = "developed",
         /// Left out.
         None = "none",
+    }
+
+    /// How a cylinder's chambers take part in the oil.
+    CylinderKind {
+        /// Both chambers are ports: bump squeezes the full piston area and expands the rod side.
+        DoubleActing = "double_acting",
+        /// The full piston area is a port; the rod side is open to the air.
+        SingleActing = "single_acting",
+        /// Both chambers are ports, with the rod taken off on either side.
+        ThroughRod = "through_rod",
+        /// Both chambers joined through the piston; the port is on the full side and the rod area acts.
+        PistonValve = "piston_valve",
+    }
+
+    /// What kind of motion an amplitude describes.
+    Motion {
+        /// Gaussian, as on a road.
+        Random = "random",
+        /// Sine.
+        Harmonic = "harmonic",
+    }
+
+    /// What resists the flow in a valve.
+    ValveKind {
+        /// A check valve with a throttle beside it: `throttle`, `open_resistance`, `cracking_pressure`.
+        Check = "check",
+        /// One resistance for either direction: `forward`, `backward`.
+        Split = "split",
+        /// Pressure drop over flow: `flow`, `pressure_drop`.
+        Table = "table",
+        /// Sharp-edged orifice: `diameter`, `discharge`.
+        Orifice = "orifice",
     }
 
     /// How the chambers of the four cylinders are joined to circuits.
@@ -75,6 +110,12 @@ tables! {
         layout: Option<Layout<N>> = maybe(Layout),
         /// Circuits given one by one.
         circuits: Named<Circuit<N>> = named(Circuit),
+        /// Nodes of the oil beside the hubs of the circuits.
+        nodes: Named<Node<N>> = named(Node),
+        /// Lines between circuits and nodes.
+        lines: Named<ConnectingLine<N>> = named(ConnectingLine),
+        /// Mechanical links between wheels.
+        links: Named<Link<N>> = named(Link),
         /// Places where people sit.
         seats: Named<Seat<N>> = named(Seat),
         /// Named settings: values by path that override the file's.
@@ -139,8 +180,8 @@ tables! {
 
     /// Tyre, vertically.
     Tyre {
-        /// Vertical rate.
-        rate: N = number("N/m", POSITIVE),
+        /// Vertical rate; zero for a wheel off the ground.
+        rate: N = number("N/m", NOT_NEGATIVE),
         /// Vertical damping.
         damping: N = number("N*s/m", Bounds::within(0.0, 1e8), 0.0),
     }
@@ -155,17 +196,29 @@ tables! {
 
     /// Suspension damper beside any cylinder.
     Damper {
-        /// Force per velocity of the damper itself.
-        coefficient: N = number("N*s/m", Bounds::within(0.0, 1e8)),
+        /// Force per velocity of the damper itself; or give `velocity` and `force`.
+        coefficient: Option<N> = optional("N*s/m", Bounds::within(0.0, 1e8)),
+        /// Velocities of a force–velocity table, bump positive, ascending; from 0 upwards means alike both ways.
+        velocity: Option<Vec<N>> = list("m/s", Bounds::within(-100.0, 100.0)),
+        /// Forces at these velocities, resisting bump positive.
+        force: Option<Vec<N>> = list("N", Bounds::within(-1e7, 1e7)),
+        /// Dry friction, either way.
+        friction: N = number("N", Bounds::within(0.0, 1e6), 0.0),
+        /// Velocity of the damper (r.m.s.) at which table and friction are taken as linear.
+        amplitude: Option<N> = optional("m/s", Bounds::up_to(100.0)),
+        /// Motion that the amplitude describes.
+        motion: Motion = choice(Motion),
         /// Damper travel over wheel travel.
         motion_ratio: N = number("1", POSITIVE, 1.0),
         /// Rate of a mount in series with the damper; absent means rigid.
         mount_rate: Option<N> = optional("N/m", Bounds::within(1e2, 1e10)),
     }
 
-    /// Double-acting hydraulic cylinder between wheel and body; bump squeezes its `bump` chamber
-    /// (full piston area) and expands its `rebound` chamber (rod side).
+    /// Hydraulic cylinder between wheel and body; bump squeezes its `bump` chamber (full piston area) and expands
+    /// its `rebound` chamber (rod side).
     Cylinder {
+        /// How its chambers take part.
+        kind: CylinderKind = choice(CylinderKind),
         /// Bore.
         bore: N = number("m", Bounds::up_to(1.0)),
         /// Rod diameter, on the rebound side.
@@ -174,6 +227,16 @@ tables! {
         motion_ratio: N = number("1", POSITIVE, 1.0),
         /// Stroke; at rest the piston is in its middle. Sets the oil volume of the chambers.
         stroke: N = number("m", Bounds::within(0.0, 5.0), 0.0),
+        /// Resistance of the passage through the piston, of a `piston_valve` cylinder.
+        piston_throttle: N = number("Pa*s/m^3", RESISTANCE, 0.0),
+        /// Valve in the piston, of a `piston_valve` cylinder; forward is the flow in bump.
+        piston_valve: Option<Valve<N>> = maybe(Valve),
+        /// Dry friction of seals and bushes, either way.
+        friction: N = number("N", Bounds::within(0.0, 1e6), 0.0),
+        /// Velocity of the piston (r.m.s.) at which friction is taken as linear.
+        amplitude: Option<N> = optional("m/s", Bounds::up_to(100.0)),
+        /// Motion that the amplitude describes.
+        motion: Motion = choice(Motion),
     }
 
     /// Oil.
@@ -200,28 +263,139 @@ tables! {
         pressure: N = pressure,
         /// Oil volume at the hub beside that of chambers and lines.
         volume: N = number("m^3", NOT_NEGATIVE, 0.0),
+        /// Swell of hoses at the hub: volume per pressure.
+        compliance: N = number("m^3/Pa", COMPLIANCE, 0.0),
         /// Chambers, keyed by corner and side, e.g. `front_left_bump`.
         chambers: Named<Port<N>> = named(Port),
         /// Accumulators.
         accumulators: Named<Accumulator<N>> = named(Accumulator),
     }
 
-    /// Way from a cylinder chamber to the hub of its circuit.
+    /// Way from a cylinder chamber to the hub of its circuit, or to a node.
     Port {
+        /// Node that the way leads to; left out, the hub of the circuit.
+        node: Option<String> = text,
         /// Resistance of the port throttle.
-        throttle: N = number("Pa*s/m^3", Bounds::within(0.0, 1e15), 0.0),
+        throttle: N = number("Pa*s/m^3", RESISTANCE, 0.0),
+        /// Valve in the port; forward is out of the chamber.
+        valve: Option<Valve<N>> = maybe(Valve),
+        /// Whether the way is shut.
+        closed: Flag<N> = flag,
         /// Line; absent means the chamber is at the hub.
         line: Option<Line<N>> = maybe(Line),
     }
 
-    /// Line by its geometry.
+    /// Line or hose, by its geometry (`length` and `bore`) or by data (`resistance`, `inertance`, `volume`); data
+    /// take the place of what would follow from geometry.
     Line {
         /// Length.
-        length: N = number("m", Bounds::up_to(500.0)),
+        length: Option<N> = optional("m", Bounds::up_to(500.0)),
         /// Inner diameter.
-        bore: N = number("m", Bounds::within(5e-4, 0.5)),
+        bore: Option<N> = optional("m", Bounds::within(5e-4, 0.5)),
         /// How its oil is accelerated.
         inertia: Inertia = choice(Inertia),
+        /// Pieces that the line is cut into, so that waves in a long one are seen.
+        pieces: usize = count(64),
+        /// Resistance.
+        resistance: Option<N> = optional("Pa*s/m^3", RESISTANCE),
+        /// Inertance.
+        inertance: Option<N> = optional("Pa*s^2/m^3", Bounds::within(0.0, 1e12)),
+        /// Oil volume.
+        volume: Option<N> = optional("m^3", Bounds::within(0.0, 1.0)),
+        /// Swell of a hose: volume per length and pressure.
+        swell: N = number("m^2/Pa", Bounds::within(0.0, 1e-6), 0.0),
+        /// Swell of the whole hose: volume per pressure.
+        compliance: N = number("m^3/Pa", COMPLIANCE, 0.0),
+    }
+
+    /// Place in the oil where lines meet.
+    Node {
+        /// Circuit whose pressure it has at rest.
+        circuit: String = label,
+        /// Oil volume there, beside that of lines.
+        volume: N = number("m^3", NOT_NEGATIVE, 0.0),
+        /// Swell of hoses there: volume per pressure.
+        compliance: N = number("m^3/Pa", COMPLIANCE, 0.0),
+    }
+
+    /// Line from a circuit's hub or a node to another.
+    ConnectingLine {
+        /// Circuit or node where it starts.
+        from: String = label,
+        /// Circuit or node where it ends.
+        to: String = label,
+        /// Resistance of a throttle at its start.
+        throttle: N = number("Pa*s/m^3", RESISTANCE, 0.0),
+        /// Valve at its start; forward is from `from` to `to`.
+        valve: Option<Valve<N>> = maybe(Valve),
+        /// Whether it only balances slowly (a bleed): shut for vibration, open for a standing vehicle.
+        slow: Flag<N> = flag,
+        /// Whether it is shut.
+        closed: Flag<N> = flag,
+        /// Length.
+        length: Option<N> = optional("m", Bounds::up_to(500.0)),
+        /// Inner diameter.
+        bore: Option<N> = optional("m", Bounds::within(5e-4, 0.5)),
+        /// How its oil is accelerated.
+        inertia: Inertia = choice(Inertia),
+        /// Pieces that the line is cut into, so that waves in a long one are seen.
+        pieces: usize = count(64),
+        /// Resistance, in place of that from geometry.
+        resistance: Option<N> = optional("Pa*s/m^3", RESISTANCE),
+        /// Inertance, in place of that from geometry.
+        inertance: Option<N> = optional("Pa*s^2/m^3", Bounds::within(0.0, 1e12)),
+        /// Oil volume, in place of that from geometry.
+        volume: Option<N> = optional("m^3", Bounds::within(0.0, 1.0)),
+        /// Swell of a hose: volume per length and pressure.
+        swell: N = number("m^2/Pa", Bounds::within(0.0, 1e-6), 0.0),
+        /// Swell of the whole hose: volume per pressure.
+        compliance: N = number("m^3/Pa", COMPLIANCE, 0.0),
+    }
+
+    /// Valve that is not linear, taken as a resistance at its amplitude.
+    Valve {
+        /// What resists the flow.
+        kind: ValveKind = must_choose(ValveKind),
+        /// Flow (r.m.s.) at which the valve is taken as linear.
+        amplitude: N = number("m^3/s", Bounds::up_to(1.0)),
+        /// Motion that the amplitude describes.
+        motion: Motion = choice(Motion),
+        /// Resistance of the throttle beside a check valve.
+        throttle: Option<N> = optional("Pa*s/m^3", OPENING),
+        /// Resistance of the open check valve itself.
+        open_resistance: Option<N> = optional("Pa*s/m^3", OPENING),
+        /// Pressure difference at which the check valve opens, forward.
+        cracking_pressure: Option<N> = optional("Pa", Bounds::within(0.0, 1e8)),
+        /// Resistance to forward flow, of a split.
+        forward: Option<N> = optional("Pa*s/m^3", RESISTANCE),
+        /// Resistance to backward flow, of a split.
+        backward: Option<N> = optional("Pa*s/m^3", RESISTANCE),
+        /// Flows of a table, ascending; from 0 upwards means alike both ways.
+        flow: Option<Vec<N>> = list("m^3/s", Bounds::within(-1.0, 1.0)),
+        /// Pressure drops at these flows.
+        pressure_drop: Option<Vec<N>> = list("Pa", Bounds::within(-1e9, 1e9)),
+        /// Diameter of an orifice.
+        diameter: Option<N> = optional("m", Bounds::within(1e-4, 0.1)),
+        /// Discharge coefficient of an orifice.
+        discharge: Option<N> = optional("1", Bounds::within(0.1, 1.0)),
+    }
+
+    /// Mechanical link between wheels: its travel is the weighted sum of the four wheel travels (bump positive).
+    Link {
+        /// Weight of the front left wheel's travel.
+        front_left: N = number("1", ANY, 0.0),
+        /// Weight of the front right wheel's travel.
+        front_right: N = number("1", ANY, 0.0),
+        /// Weight of the rear left wheel's travel.
+        rear_left: N = number("1", ANY, 0.0),
+        /// Weight of the rear right wheel's travel.
+        rear_right: N = number("1", ANY, 0.0),
+        /// Rate: force per travel of the link.
+        rate: N = number("N/m", NOT_NEGATIVE, 0.0),
+        /// Damping: force per velocity of the link.
+        damping: N = number("N*s/m", Bounds::within(0.0, 1e8), 0.0),
+        /// Inertance: force per acceleration of the link.
+        inertance: N = number("kg", Bounds::within(0.0, 1e6), 0.0),
     }
 
     /// Gas accumulator. Give either `volume` or `gas_volume`.
@@ -236,8 +410,14 @@ tables! {
         precharge_temperature: N = number("K", Bounds::within(200.0, 450.0), 293.15),
         /// Polytropic exponent of the gas: 1 isothermal, 1.4 adiabatic.
         exponent: N = number("1", Bounds::within(1.0, 2.5), 1.4),
+        /// Node that it is at; left out, the hub of the circuit.
+        node: Option<String> = text,
         /// Resistance of the throttle before the accumulator.
-        throttle: N = number("Pa*s/m^3", Bounds::within(0.0, 1e15), 0.0),
+        throttle: N = number("Pa*s/m^3", RESISTANCE, 0.0),
+        /// Valve before the accumulator; forward is into it.
+        valve: Option<Valve<N>> = maybe(Valve),
+        /// Whether the way to it is shut.
+        closed: Flag<N> = flag,
         /// Line between hub and accumulator.
         line: Option<Line<N>> = maybe(Line),
     }
@@ -250,6 +430,8 @@ tables! {
         pressure: N = pressure,
         /// Oil volume at every hub beside that of chambers and lines.
         volume: N = number("m^3", NOT_NEGATIVE, 0.0),
+        /// Swell of hoses at every hub: volume per pressure.
+        compliance: N = number("m^3/Pa", COMPLIANCE, 0.0),
         /// Ways from the chambers to the hubs.
         ports: Ports<N> = filled(Ports),
         /// Accumulators of every circuit.
@@ -295,5 +477,34 @@ impl<N> Spec<N> {
     /// A corner.
     pub fn corner(&self, corner: Corner) -> Option<&CornerSpec<N>> {
         self.axle(corner).side(corner.is_left())
+    }
+}
+
+impl CylinderKind {
+    /// Whether its rebound chamber is a port.
+    pub fn has_rebound_port(self) -> bool {
+        matches!(self, Self::DoubleActing | Self::ThroughRod)
+    }
+}
+
+impl<N: Copy> ConnectingLine<N> {
+    /// Whether it has a pipe, and not only what stands at its start.
+    pub fn has_pipe(&self) -> bool {
+        [self.length, self.bore, self.resistance, self.inertance, self.volume].iter().any(Option::is_some)
+    }
+
+    /// The line itself, without what stands at its start.
+    pub fn line(&self) -> Line<N> {
+        Line {
+            length: self.length,
+            bore: self.bore,
+            inertia: self.inertia,
+            pieces: self.pieces,
+            resistance: self.resistance,
+            inertance: self.inertance,
+            volume: self.volume,
+            swell: self.swell,
+            compliance: self.compliance,
+        }
     }
 }

@@ -41,16 +41,21 @@ fn table(schema: &'static Schema) -> Map<String, Value> {
 fn is_required(kind: &Kind) -> bool {
     match kind {
         Kind::Number { presence, .. } => *presence == Presence::Required,
-        Kind::Choice { required, .. } => *required,
+        Kind::Choice { required, .. } | Kind::Text { required } => *required,
         Kind::Table { presence, .. } => *presence == TablePresence::Required,
-        Kind::Text | Kind::Named { .. } | Kind::Overrides => false,
+        Kind::Flag | Kind::List { .. } | Kind::Count { .. } | Kind::Named { .. } | Kind::Overrides => false,
     }
 }
 
 fn field(field: &'static Field) -> Value {
     let mut value = match &field.kind {
         Kind::Number { unit, bounds, pressure, presence } => number(unit, bounds, *pressure, *presence),
-        Kind::Text => json!({ "type": "string" }),
+        Kind::Text { .. } => json!({ "type": "string" }),
+        Kind::Flag => json!({ "type": "boolean", "default": false }),
+        Kind::List { unit, bounds } => {
+            json!({ "type": "array", "items": number(unit, bounds, false, Presence::Required) })
+        }
+        Kind::Count { largest } => json!({ "type": "integer", "minimum": 1, "maximum": largest, "default": 1 }),
         Kind::Choice { words, required: true } => json!({ "enum": words }),
         Kind::Choice { words, required: false } => json!({ "enum": words, "default": words[0] }),
         Kind::Table { schema, .. } => Value::Object(table(schema)),

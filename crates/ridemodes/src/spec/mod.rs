@@ -11,5 +11,5 @@ pub use fields::*;
 pub use json_schema::json_schema;
 pub(crate) use keys::{Slot, chamber};
 pub(crate) use read::{CURRENT_FORMAT, Parameter, describe, nearest, number, read_tree};
-pub use schema::{Bounds, Choice, Described, Field, Kind, Named, Presence, Schema, TablePresence};
+pub use schema::{Bounds, Choice, Described, Field, Flag, Kind, Named, Presence, Schema, TablePresence};
 pub(crate) use tree::{Tree, expand, fill, join, parse_json, parse_toml, walk};

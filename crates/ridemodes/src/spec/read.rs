@@ -103,16 +103,57 @@ impl Reading {
                         f64::NAN
                     }
                 };
-                self.numbers.push(number);
-                self.parameters.push(Parameter { path, field });
-                Some(Value::from(self.numbers.len() - 1))
+                Some(self.slot(number, path, field))
             }
-            Kind::Text => match value {
+            Kind::Flag => {
+                let truth = value.map_or(Ok(0.0), |value| number(field, &path, value, self.atmosphere));
+                let truth = truth.unwrap_or_else(|violation| {
+                    self.violations.push(violation);
+                    f64::NAN
+                });
+                Some(self.slot(truth, path, field))
+            }
+            Kind::List { .. } => match value {
                 None => None,
+                Some(Value::Array(items)) => {
+                    let mut slots = Vec::new();
+                    for (place, item) in items.iter().enumerate() {
+                        let path = join(&path, &place.to_string());
+                        let number = number(field, &path, item, self.atmosphere).unwrap_or_else(|violation| {
+                            self.violations.push(violation);
+                            f64::NAN
+                        });
+                        slots.push(self.slot(number, path, field));
+                    }
+                    Some(slots.into())
+                }
+                Some(other) => {
+                    self.violations.push(Violation::new(path, describe(other), "must be a list of numbers"));
+                    None
+                }
+            },
+            Kind::Count { largest } => match value {
+                None => Some(1.into()),
+                Some(whole) if whole.as_u64().is_some_and(|whole| (1..=*largest).contains(&whole)) => {
+                    Some(whole.clone())
+                }
+                Some(other) => {
+                    let rule = format!("must be a whole number from 1 to {largest}");
+                    self.violations.push(Violation::new(path, describe(other), rule));
+                    Some(1.into())
+                }
+            },
+            Kind::Text { required } => match value {
+                None => {
+                    if *required {
+                        self.missing(&path, "", field, quiet);
+                    }
+                    required.then(|| "".into())
+                }
                 Some(Value::String(text)) => Some(text.clone().into()),
                 Some(other) => {
                     self.violations.push(Violation::new(path, describe(other), "must be a text"));
-                    None
+                    required.then(|| "".into())
                 }
             },
             Kind::Choice { words, required } => {
@@ -172,6 +213,12 @@ impl Reading {
         }
     }
 
+    fn slot(&mut self, number: f64, path: String, field: &'static Field) -> Value {
+        self.numbers.push(number);
+        self.parameters.push(Parameter { path, field });
+        (self.numbers.len() - 1).into()
+    }
+
     fn named(&mut self, value: Option<&Value>, schema: &'static Schema, path: &str) -> Tree {
         let mut tree = Tree::new();
         match value {
@@ -221,9 +268,14 @@ impl Reading {
 
 /// A number as a file or a caller gives it, in SI and within its bounds.
 pub(crate) fn number(field: &Field, path: &str, value: &Value, atmosphere: f64) -> Result<f64, Violation> {
-    let Kind::Number { unit, bounds, pressure, .. } = &field.kind else {
+    if matches!(field.kind, Kind::Flag) {
+        let truth = value.as_bool().ok_or_else(|| Violation::new(path, describe(value), "must be true or false"))?;
+        return Ok(f64::from(truth));
+    }
+    let Some((unit, bounds)) = field.kind.number() else {
         return Err(Violation::new(path, describe(value), "is not a number of the vehicle"));
     };
+    let pressure = matches!(field.kind, Kind::Number { pressure: true, .. });
     let wrong = |rule: String, hint: String| Violation::new(path, describe(value), rule).unit(unit).hint(hint);
     let si = match value {
         Value::Number(number) => number.as_f64().unwrap_or(f64::NAN),
@@ -260,7 +312,7 @@ pub(crate) fn number(field: &Field, path: &str, value: &Value, atmosphere: f64) 
         Err(wrong("must be a finite number".into(), String::new()))
     } else {
         let hint = match value {
-            Value::Number(number) if si != 0.0 => slip(number, unit, *bounds).unwrap_or_default(),
+            Value::Number(number) if si != 0.0 => slip(number, unit, bounds).unwrap_or_default(),
             _ if si == 0.0 => "leave it out if there is none".into(),
             _ => String::new(),
         };

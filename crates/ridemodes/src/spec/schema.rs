@@ -44,8 +44,25 @@ pub enum Kind {
         /// Whether the file must give it, may leave it out, or leaves it at a value.
         presence: Presence,
     },
-    /// Free text.
-    Text,
+    /// Free text, or the name of another part.
+    Text {
+        /// Whether the file must give it.
+        required: bool,
+    },
+    /// True or false; left out it is false. It is kept among the numbers as 1 or 0, so that a setting can turn it.
+    Flag,
+    /// A list of numbers.
+    List {
+        /// SI unit, "1" if none.
+        unit: &'static str,
+        /// Values allowed.
+        bounds: Bounds,
+    },
+    /// A whole number that decides how many parts there are; 1 where it is left out.
+    Count {
+        /// Largest number allowed.
+        largest: u64,
+    },
     /// One of several words; the first is taken where the field is left out, unless it is required.
     Choice {
         /// The words.
@@ -67,6 +84,16 @@ pub enum Kind {
     },
     /// Named sets of values by path.
     Overrides,
+}
+
+impl Kind {
+    /// Unit and bounds, where a number has them.
+    pub fn number(&self) -> Option<(&'static str, Bounds)> {
+        match self {
+            Self::Number { unit, bounds, .. } | Self::List { unit, bounds } => Some((unit, *bounds)),
+            _ => None,
+        }
+    }
 }
 
 /// Whether a number must be there.
@@ -172,11 +199,36 @@ impl<'de, T: Deserialize<'de>> Deserialize<'de> for Named<T> {
     }
 }
 
+/// True or false. Its number is 1 or 0; in a file of plain numbers it is written `true` or `false`.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub struct Flag<N>(pub N);
+
+// A slot is a whole number and stays one; a plain number is written as truth.
+impl<N: Serialize> Serialize for Flag<N> {
+    fn serialize<S: Serializer>(&self, serializer: S) -> Result<S::Ok, S::Error> {
+        match serde_json::to_value(&self.0) {
+            Ok(value) if value.is_f64() => (value.as_f64() == Some(1.0)).serialize(serializer),
+            Ok(value) => value.serialize(serializer),
+            Err(error) => Err(serde::ser::Error::custom(error)),
+        }
+    }
+}
+
+impl<'de, N: serde::de::DeserializeOwned> Deserialize<'de> for Flag<N> {
+    fn deserialize<D: Deserializer<'de>>(deserializer: D) -> Result<Self, D::Error> {
+        let value = match serde_json::Value::deserialize(deserializer)? {
+            serde_json::Value::Bool(truth) => f64::from(truth).into(),
+            other => other,
+        };
+        serde_json::from_value(value).map(Self).map_err(serde::de::Error::custom)
+    }
+}
+
 /// Declares the tables of the file.
 ///
 /// Each field is `name: Type = kind`, with kinds
 /// `number("unit", bounds)`, `number("unit", bounds, default)`, `optional("unit", bounds)`,
-/// `pressure`, `pressure(default)`, `text`, `choice(Enum)`, `must_choose(Enum)`, `table(Struct)`,
+/// `pressure`, `pressure(default)`, `list("unit", bounds)`, `flag`, `count(largest)`, `text`, `label`, `choice(Enum)`, `must_choose(Enum)`, `table(Struct)`,
 /// `maybe(Struct)`, `filled(Struct)`, `named(Struct)`, `overrides`.
 macro_rules! tables {
     ($( $(#[doc = $doc:literal])+ $name:ident { $( $(#[doc = $meaning:literal])+ $field:ident: $type:ty = $kind:ident $(($($args:tt)*))?, )+ } )+) => { $(
@@ -184,7 +236,7 @@ macro_rules! tables {
         ///
         /// `N` is the type of its numbers: `f64` in a file, a slot in a vehicle's structure.
         #[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
-        #[serde(bound(serialize = "N: Serialize", deserialize = "N: Deserialize<'de>"))]
+        #[serde(bound(serialize = "N: Serialize", deserialize = "N: serde::de::DeserializeOwned"))]
         pub struct $name<N = f64> {
             $(
                 $(#[doc = $meaning])+
@@ -210,7 +262,11 @@ macro_rules! tables {
     (@kind optional ($unit:literal, $bounds:expr)) => { tables!(@number $unit, $bounds, false, Presence::Optional) };
     (@kind pressure) => { tables!(@number "Pa", Bounds::POSITIVE, true, Presence::Required) };
     (@kind pressure ($default:expr)) => { tables!(@number "Pa", Bounds::POSITIVE, true, Presence::Default($default)) };
-    (@kind text) => { Kind::Text };
+    (@kind list ($unit:literal, $bounds:expr)) => { Kind::List { unit: $unit, bounds: $bounds } };
+    (@kind flag) => { Kind::Flag };
+    (@kind count ($largest:literal)) => { Kind::Count { largest: $largest } };
+    (@kind text) => { Kind::Text { required: false } };
+    (@kind label) => { Kind::Text { required: true } };
     (@kind choice ($type:ident)) => { Kind::Choice { words: <$type as Choice>::WORDS, required: false } };
     (@kind must_choose ($type:ident)) => { Kind::Choice { words: <$type as Choice>::WORDS, required: true } };
     (@kind table ($type:ident)) => { Kind::Table { schema: <$type as Described>::SCHEMA, presence: TablePresence::Required } };

@@ -2,8 +2,8 @@
 
 use serde_json::{Map, Value};
 
-use super::LayoutKind;
 use super::schema::{Field, Kind, Schema};
+use super::{CylinderKind, LayoutKind};
 use crate::axes::{CORNERS, Corner};
 use crate::error::{Error, Result};
 
@@ -61,7 +61,12 @@ pub(crate) fn walk(
         let Some(value) = tree.get(field.name) else { continue };
         let path = join(path, field.name);
         match &field.kind {
-            Kind::Number { .. } => visit(path, field, value),
+            Kind::Number { .. } | Kind::Flag => visit(path, field, value),
+            Kind::List { .. } => {
+                for (place, item) in value.as_array().into_iter().flatten().enumerate() {
+                    visit(join(&path, &place.to_string()), field, item);
+                }
+            }
             Kind::Table { schema, .. } => {
                 if let Value::Object(table) = value {
                     walk(table, schema, &path, visit);
@@ -74,7 +79,7 @@ pub(crate) fn walk(
                     }
                 }
             }
-            Kind::Text | Kind::Choice { .. } | Kind::Overrides => {}
+            Kind::Text { .. } | Kind::Choice { .. } | Kind::Count { .. } | Kind::Overrides => {}
         }
     }
 }
@@ -86,6 +91,12 @@ pub(crate) fn fill(tree: &Tree, schema: &'static Schema, value: &impl Fn(&Value)
         let Some(place) = filled.get_mut(field.name) else { continue };
         match &field.kind {
             Kind::Number { .. } => *place = value(place),
+            Kind::Flag => *place = (value(place).as_f64() == Some(1.0)).into(),
+            Kind::List { .. } => {
+                for item in place.as_array_mut().into_iter().flatten() {
+                    *item = value(item);
+                }
+            }
             Kind::Table { schema, .. } => {
                 if let Value::Object(table) = place {
                     *table = fill(table, schema, value);
@@ -98,7 +109,7 @@ pub(crate) fn fill(tree: &Tree, schema: &'static Schema, value: &impl Fn(&Value)
                     }
                 }
             }
-            Kind::Text | Kind::Choice { .. } | Kind::Overrides => {}
+            Kind::Text { .. } | Kind::Choice { .. } | Kind::Count { .. } | Kind::Overrides => {}
         }
     }
     filled
@@ -112,7 +123,7 @@ pub(crate) fn join(path: &str, name: &str) -> String {
 /// members of a group share its slots.
 pub(crate) fn expand(given: &Tree) -> Tree {
     let mut tree = given.clone();
-    let equipped: Vec<Corner> = CORNERS.into_iter().filter(|&corner| has_cylinder(given, corner)).collect();
+    let chambers: Vec<(Corner, bool)> = CORNERS.into_iter().flat_map(|corner| chambers(given, corner)).collect();
     for axle in ["front", "rear"] {
         if let Some(Value::Object(axle)) = tree.get_mut(axle)
             && let Some(both) = axle.remove("both")
@@ -122,16 +133,21 @@ pub(crate) fn expand(given: &Tree) -> Tree {
         }
     }
     if let Some(Value::Object(layout)) = tree.remove("layout") {
-        tree.insert("circuits".into(), Value::Object(circuits(&layout, &equipped)));
+        tree.insert("circuits".into(), Value::Object(circuits(&layout, &chambers)));
     }
     tree
 }
 
-fn has_cylinder(tree: &Tree, corner: Corner) -> bool {
+// The chambers of a corner that a circuit serves.
+fn chambers(tree: &Tree, corner: Corner) -> Vec<(Corner, bool)> {
     let axle = tree.get(if corner.is_front() { "front" } else { "rear" });
-    ["both", if corner.is_left() { "left" } else { "right" }]
+    let cylinder = ["both", if corner.is_left() { "left" } else { "right" }]
         .iter()
-        .any(|side| axle.and_then(|axle| axle.get(side)?.get("cylinder")).is_some())
+        .find_map(|side| axle.and_then(|axle| axle.get(side)?.get("cylinder")));
+    let Some(cylinder) = cylinder else { return Vec::new() };
+    let kind = cylinder.get("kind").and_then(|kind| serde_json::from_value::<CylinderKind>(kind.clone()).ok());
+    let rebound = kind.is_none_or(CylinderKind::has_rebound_port);
+    [true, false].into_iter().filter(|&bump| bump || rebound).map(|bump| (corner, bump)).collect()
 }
 
 /// Name of the circuit that a layout gives a chamber to; `bump` says which side of the piston.
@@ -155,29 +171,27 @@ pub(crate) fn circuit_of(kind: LayoutKind, corner: Corner, bump: bool) -> &'stat
     }
 }
 
-fn circuits(layout: &Tree, equipped: &[Corner]) -> Tree {
+fn circuits(layout: &Tree, chambers: &[(Corner, bool)]) -> Tree {
     let kind = layout.get("kind").and_then(|kind| serde_json::from_value(kind.clone()).ok());
     let Some(kind) = kind else { return Tree::new() };
     let ports = layout.get("ports");
     let mut circuits = Tree::new();
-    for &corner in equipped {
-        for bump in [true, false] {
-            let side = if bump { "bump" } else { "rebound" };
-            let port = format!("{}_{side}", if corner.is_front() { "front" } else { "rear" });
-            let port = ports.and_then(|ports| ports.get(port)).cloned();
-            let circuit = circuits.entry(circuit_of(kind, corner, bump)).or_insert_with(|| {
-                let mut circuit = Tree::new();
-                for shared in ["pressure", "volume", "accumulators"] {
-                    if let Some(value) = layout.get(shared) {
-                        circuit.insert(shared.into(), value.clone());
-                    }
+    for &(corner, bump) in chambers {
+        let side = if bump { "bump" } else { "rebound" };
+        let port = format!("{}_{side}", if corner.is_front() { "front" } else { "rear" });
+        let port = ports.and_then(|ports| ports.get(port)).cloned();
+        let circuit = circuits.entry(circuit_of(kind, corner, bump)).or_insert_with(|| {
+            let mut circuit = Tree::new();
+            for shared in ["pressure", "volume", "compliance", "accumulators"] {
+                if let Some(value) = layout.get(shared) {
+                    circuit.insert(shared.into(), value.clone());
                 }
-                circuit.insert("chambers".into(), Value::Object(Tree::new()));
-                Value::Object(circuit)
-            });
-            if let Some(Value::Object(chambers)) = circuit.get_mut("chambers") {
-                chambers.insert(format!("{}_{side}", corner.name()), port.unwrap_or_default());
             }
+            circuit.insert("chambers".into(), Value::Object(Tree::new()));
+            Value::Object(circuit)
+        });
+        if let Some(Value::Object(chambers)) = circuit.get_mut("chambers") {
+            chambers.insert(format!("{}_{side}", corner.name()), port.unwrap_or_default());
         }
     }
     circuits

@@ -4,26 +4,38 @@ use std::sync::Arc;
 
 use super::{Assembly, Element, ElementKind, PressureRow, mechanical_names};
 use crate::axes::{CORNERS, Corner, MECHANICAL};
+use crate::equivalent::{Pieces, of_dry_friction};
 use crate::error::Result;
-use crate::hydraulics::{Chamber, LineValues, Reduction, Row, Store, reduce};
+use crate::hydraulics::{Chamber, Reduction, Row, Store, reduce};
 use crate::numerics::Scalar;
-use crate::spec::Slot;
+use crate::spec::{Damper, Motion, Slot};
 use crate::statics::Positions;
 use crate::vehicle::Structure;
 
+/// What slow lines do.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub(crate) enum SlowLines {
+    /// Oil creeps through them: each is a state.
+    Flow,
+    /// Shut, as they are to vibration.
+    Shut,
+}
+
 /// Assembles the linear system at the design condition.
-pub(crate) fn assemble<T: Scalar>(structure: &Structure, numbers: &[T]) -> Result<Assembly<T>> {
+pub(crate) fn assemble<T: Scalar>(structure: &Structure, numbers: &[T], slow: SlowLines) -> Result<Assembly<T>> {
     let spec = &structure.spec;
     let network = &structure.network;
     let value = |slot: Slot| numbers[slot.0];
     let oil = network.values(spec, numbers);
     // Branches on a value are decided in f64.
-    let ideal: Vec<bool> = oil.lines.iter().map(is_ideal).collect();
+    let shut = slow == SlowLines::Shut;
+    let open: Vec<bool> = oil.lines.iter().map(|line| !line.closed && !(shut && line.slow)).collect();
+    let ideal: Vec<bool> = oil.lines.iter().map(|line| line.is_ideal()).collect();
     let inertial: Vec<bool> = oil.lines.iter().map(|line| line.inertance.value() > 0.0).collect();
     let compliant: Vec<bool> =
         oil.compliance.iter().map(|stores| stores.iter().any(|store| store.value() > 0.0)).collect();
     let area = |chamber: Chamber| chamber.signed_area(spec, numbers);
-    let reduction = reduce(network, &ideal, &inertial, &compliant, |chamber| area(chamber).value())?;
+    let reduction = reduce(network, &open, &ideal, &inertial, &compliant, |chamber| area(chamber).value())?;
     let layout = Layout::new(structure, &reduction);
     let mut build = Builder { positions: Positions::new(spec, numbers), size: layout.size, elements: Vec::new() };
 
@@ -46,18 +58,27 @@ pub(crate) fn assemble<T: Scalar>(structure: &Structure, numbers: &[T]) -> Resul
         }
         if let Some(damper) = &data.damper {
             let mut row = build.travel(corner, value(damper.motion_ratio));
-            let coefficient = value(damper.coefficient);
-            match (damper.mount_rate, layout.inner[corner.index()]) {
-                // Maxwell branch: the damper on its own travel ξ, the mount on MR δ − ξ.
-                (Some(mount), Some(inner)) => {
-                    row[inner] = -T::one();
-                    build.add(&names.mount, ElementKind::Mount, row, [T::zero(), T::zero(), value(mount)]);
-                    let mut own = build.zeros();
-                    own[inner] = T::one();
-                    build.add(&names.damper, ElementKind::Damper, own, [T::zero(), coefficient, T::zero()]);
-                }
-                _ => build.add(&names.damper, ElementKind::Damper, row, [T::zero(), coefficient, T::zero()]),
+            // Maxwell branch: the damper on its own travel ξ, the mount on MR δ − ξ.
+            if let (Some(mount), Some(inner)) = (damper.mount_rate, layout.inner[corner.index()]) {
+                row[inner] = -T::one();
+                build.add(&names.mount, ElementKind::Mount, row, [T::zero(), T::zero(), value(mount)]);
+                row = build.zeros();
+                row[inner] = T::one();
             }
+            let coefficient = [T::zero(), damper_coefficient(damper, numbers), T::zero()];
+            build.add(&names.damper, ElementKind::Damper, row.clone(), coefficient);
+            build.friction(
+                &names.damper_friction,
+                row,
+                value(damper.friction),
+                damper.amplitude.map(value),
+                damper.motion,
+            );
+        }
+        if let Some(cylinder) = &data.cylinder {
+            let row = build.travel(corner, value(cylinder.motion_ratio));
+            let (force, amplitude) = (value(cylinder.friction), cylinder.amplitude.map(value));
+            build.friction(&names.cylinder_friction, row, force, amplitude, cylinder.motion);
         }
     }
     for (front, axle, name) in
@@ -75,21 +96,30 @@ pub(crate) fn assemble<T: Scalar>(structure: &Structure, numbers: &[T]) -> Resul
         }
     }
 
+    for (link, name) in spec.links.0.values().zip(&structure.names.links) {
+        // s = gᵀδ
+        let weights = [link.front_left, link.front_right, link.rear_left, link.rear_right].map(value);
+        let row = build.deflection(&weights);
+        build.add(name, ElementKind::Link, row, [link.inertance, link.damping, link.rate].map(value));
+    }
+
     let mut pressures = Vec::new();
     for pool in &reduction.pools {
         let inflow = build.oil(&pool.inflow, &layout, area);
         let mut compliance = T::zero();
         for &node in &pool.nodes {
-            for &store in &oil.compliance[node] {
-                compliance += store;
-            }
+            compliance += oil.node_compliance(node);
         }
         for &node in &pool.nodes {
             for (named, &store) in network.nodes[node].stores.iter().zip(&oil.compliance[node]) {
                 let kind = match named.store {
                     Store::Gas(_) => ElementKind::Gas,
+                    Store::Swell(_) | Store::PipeSwell { .. } => ElementKind::Hose,
                     _ => ElementKind::Oil,
                 };
+                if kind == ElementKind::Hose && store.is_zero() {
+                    continue;
+                }
                 // Energy of one store at the common pressure: C_i p²/2 with p = g·u/C.
                 let share = store / compliance.square();
                 build.add(&named.name, kind, inflow.clone(), [T::zero(), T::zero(), share]);
@@ -98,13 +128,20 @@ pub(crate) fn assemble<T: Scalar>(structure: &Structure, numbers: &[T]) -> Resul
         let name = Arc::clone(&network.nodes[pool.nodes[0]].name);
         pressures.push(PressureRow { name, inflow, compliance });
     }
+    pressures.sort_by(|a, b| a.name.cmp(&b.name));
     for (line, moved) in &reduction.moved {
         let values = oil.lines[*line];
         let names = &network.lines[*line];
         let row = build.oil(moved, &layout, area);
-        build.add(&names.throttle_name, ElementKind::Throttle, row.clone(), [T::zero(), values.throttle, T::zero()]);
+        if names.throttle.is_some() {
+            let throttle = [T::zero(), values.throttle, T::zero()];
+            build.add(&names.throttle_name, ElementKind::Throttle, row.clone(), throttle);
+        }
+        if names.valve.is_some() {
+            build.add(&names.valve_name, ElementKind::Valve, row.clone(), [T::zero(), values.valve, T::zero()]);
+        }
         if names.pipe.is_some() {
-            build.add(&names.pipe_name, ElementKind::Line, row, [values.inertance, values.resistance, T::zero()]);
+            build.add(&names.pipe_name, ElementKind::Line, row, [values.inertance, values.pipe, T::zero()]);
         }
     }
 
@@ -137,6 +174,7 @@ pub(crate) fn assemble<T: Scalar>(structure: &Structure, numbers: &[T]) -> Resul
         .collect();
     Ok(Assembly {
         coordinates: layout.names,
+        volumes: layout.volumes,
         body,
         elements: build.elements,
         pressures,
@@ -146,9 +184,17 @@ pub(crate) fn assemble<T: Scalar>(structure: &Structure, numbers: &[T]) -> Resul
     })
 }
 
-// A pipe with neither resistance nor inertance joins its nodes.
-fn is_ideal<T: Scalar>(line: &LineValues<T>) -> bool {
-    line.throttle.value() == 0.0 && line.resistance.value() == 0.0 && line.inertance.value() == 0.0
+// As given, or E[F v]/E[v²] of the table at its amplitude.
+fn damper_coefficient<T: Scalar>(damper: &Damper<Slot>, numbers: &[T]) -> T {
+    let value = |slot: &Slot| numbers[slot.0];
+    match (&damper.coefficient, &damper.velocity, &damper.force, &damper.amplitude) {
+        (Some(coefficient), ..) => value(coefficient),
+        (None, Some(velocity), Some(force), Some(amplitude)) => {
+            let list = |slots: &[Slot]| slots.iter().map(value).collect::<Vec<T>>();
+            Pieces::through(&list(velocity), &list(force)).equivalent(value(amplitude), damper.motion)
+        }
+        _ => T::zero(),
+    }
 }
 
 // Where each coordinate stands: the mechanical ones, then all others by name.
@@ -205,6 +251,14 @@ struct Builder<T> {
 impl<T: Scalar> Builder<T> {
     fn add(&mut self, name: &Arc<str>, kind: ElementKind, row: Vec<T>, [mass, damping, stiffness]: [T; 3]) {
         self.elements.push(Element { name: Arc::clone(name), kind, row, mass, damping, stiffness, road: None });
+    }
+
+    // Dry friction at its amplitude; none is no element.
+    fn friction(&mut self, name: &Arc<str>, row: Vec<T>, force: T, amplitude: Option<T>, motion: Motion) {
+        if let Some(amplitude) = amplitude.filter(|_| !force.is_zero()) {
+            let coefficient = of_dry_friction(force, amplitude, motion);
+            self.add(name, ElementKind::Friction, row, [T::zero(), coefficient, T::zero()]);
+        }
     }
 
     // The element added last stands on the road.
@@ -295,9 +349,12 @@ mod tests {
             let at = |slot: usize, value: f64| {
                 let mut numbers = car.numbers().to_vec();
                 numbers[slot] = value;
-                matrices(&assemble(car.structure(), &numbers).unwrap())
+                matrices(&assemble(car.structure(), &numbers, SlowLines::Flow).unwrap())
             };
             for (slot, parameter) in car.structure().parameters.iter().enumerate() {
+                if parameter.field.kind.number().is_none() {
+                    continue; // a flag
+                }
                 let value = car.numbers()[slot];
                 if value == 0.0 {
                     continue; // at a bound: a throttle of zero is no throttle
@@ -308,7 +365,7 @@ mod tests {
                         if i == slot { Dual::variable(number) } else { Dual::constant(number) }
                     })
                     .collect();
-                let exact = matrices(&assemble(car.structure(), &seeded).unwrap());
+                let exact = matrices(&assemble(car.structure(), &seeded, SlowLines::Flow).unwrap());
                 let step = 1e-5 * value;
                 for ((exact, above), below) in exact.iter().zip(at(slot, value + step)).zip(at(slot, value - step)) {
                     let size = |i: usize| exact[(i, i)].value.abs();

@@ -158,17 +158,20 @@ fn add(total: &mut DMatrix<f64>, element: &Element, scalar: f64) {
 impl LinearSystem {
     /// Quasi-static coupling of the oil at the wheels (4 × 4) [N/m], K_hyd(0): the limit of
     /// [`dynamic_coupling`](Self::dynamic_coupling) at vanishing frequency.
+    ///
+    /// Slow lines are shut.
     pub fn coupling(&self) -> Result<Matrix4<f64>> {
-        Ok(self.quasi_static()?.sum(self, |element| element.stiffness, |element| element.kind.is_hydraulic()))
+        let system = self.with_slow_lines_shut()?;
+        Ok(system.quasi_static()?.sum(system, |element| element.stiffness, |element| element.kind.is_hydraulic()))
     }
 
     /// Dynamic coupling of the oil at the wheels, D(j2πf) = K_hyd + j2πf C_hyd (4 × 4 × frequencies)
-    /// [N/m], from the Schur complement of the line coordinates; `frequency` in Hz.
+    /// [N/m], from the Schur complement of the line coordinates; `frequency` in Hz. Slow lines are shut.
     ///
     /// # Errors
     /// [`Error::Singular`] at an undamped resonance of the oil.
     pub fn dynamic_coupling(&self, frequency: &[f64]) -> Result<Array3<Complex64>> {
-        let oil = OilForm::new(self)?;
+        let oil = OilForm::new(self.with_slow_lines_shut()?)?;
         let mut result = Array3::zeros((4, 4, frequency.len()));
         for (place, &f) in frequency.iter().enumerate() {
             let d = oil.at(f)?;

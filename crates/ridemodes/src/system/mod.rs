@@ -16,7 +16,7 @@ use crate::error::{Error, Result};
 use crate::numerics::Scalar;
 use crate::statics::{OperatingPoint, Positions};
 
-pub(crate) use assembly::assemble;
+pub(crate) use assembly::{SlowLines, assemble};
 pub(crate) use cache::Cache;
 pub(crate) use canonical::Canonical;
 pub(crate) use coupling::QuasiStatic;
@@ -34,16 +34,24 @@ pub enum ElementKind {
     Spring,
     /// Anti-roll bar.
     AntiRollBar,
+    /// Mechanical link between wheels.
+    Link,
     /// Damper.
     Damper,
+    /// Dry friction of seals and bushes, as a damper at its amplitude.
+    Friction,
     /// Mount in series with a damper.
     Mount,
     /// Gas of an accumulator.
     Gas,
     /// Compressibility of oil.
     Oil,
+    /// Swell of hoses.
+    Hose,
     /// Throttle.
     Throttle,
+    /// Valve, as a throttle at its amplitude.
+    Valve,
     /// Line: friction and inertia of its oil.
     Line,
 }
@@ -51,12 +59,12 @@ pub enum ElementKind {
 impl ElementKind {
     /// Whether the element belongs to the oil network.
     pub fn is_hydraulic(self) -> bool {
-        matches!(self, Self::Gas | Self::Oil | Self::Throttle | Self::Line)
+        matches!(self, Self::Gas | Self::Oil | Self::Hose | Self::Throttle | Self::Valve | Self::Line)
     }
 
     /// Whether the element acts between wheel and body, mechanically.
     pub fn is_conventional(self) -> bool {
-        matches!(self, Self::Spring | Self::AntiRollBar | Self::Damper | Self::Mount)
+        matches!(self, Self::Spring | Self::AntiRollBar | Self::Link | Self::Damper | Self::Friction | Self::Mount)
     }
 
     /// The kind in words.
@@ -66,11 +74,15 @@ impl ElementKind {
             Self::Tyre => "tyre",
             Self::Spring => "spring",
             Self::AntiRollBar => "anti-roll bar",
+            Self::Link => "link",
             Self::Damper => "damper",
+            Self::Friction => "friction",
             Self::Mount => "mount",
             Self::Gas => "gas",
             Self::Oil => "oil",
+            Self::Hose => "hose",
             Self::Throttle => "throttle",
+            Self::Valve => "valve",
             Self::Line => "line",
         }
     }
@@ -108,6 +120,8 @@ pub(crate) struct PressureRow<T = f64> {
 /// Elements over the coordinates, in any scalar.
 pub(crate) struct Assembly<T> {
     pub coordinates: Vec<Arc<str>>,
+    /// Coordinates that are volumes.
+    pub volumes: Vec<usize>,
     pub body: [[T; 3]; 3],
     pub elements: Vec<Element<T>>,
     pub pressures: Vec<PressureRow<T>>,
@@ -127,6 +141,7 @@ pub(crate) struct Assembly<T> {
 pub struct LinearSystem {
     pub(crate) point: OperatingPoint,
     pub(crate) coordinates: Vec<String>,
+    volumes: Vec<usize>,
     pub(crate) elements: Vec<Element>,
     pub(crate) pressures: Vec<PressureRow>,
     pub(crate) positions: Positions<f64>,
@@ -141,31 +156,14 @@ pub struct LinearSystem {
     quasi_static: Cache<Result<QuasiStatic>>,
     #[serde(skip)]
     damped: Cache<Result<Canonical>>,
+    #[serde(skip)]
+    shut: Cache<Result<Box<LinearSystem>>>,
 }
 
 impl OperatingPoint {
     /// The linear system about this operating point.
     pub fn linear(&self) -> Result<LinearSystem> {
-        let vehicle = &self.vehicle;
-        let assembly: Assembly<f64> = assemble(vehicle.structure(), vehicle.numbers())?;
-        let mass = sum(&assembly, |element| element.mass, Some(&assembly.body));
-        let damping = sum(&assembly, |element| element.damping, None);
-        let stiffness = sum(&assembly, |element| element.stiffness, None);
-        Ok(LinearSystem {
-            point: self.clone(),
-            coordinates: assembly.coordinates.iter().map(ToString::to_string).collect(),
-            elements: assembly.elements,
-            pressures: assembly.pressures,
-            positions: assembly.positions,
-            body: assembly.body,
-            mass,
-            damping,
-            stiffness,
-            circulations: assembly.circulations,
-            carried: assembly.carried,
-            quasi_static: Cache::default(),
-            damped: Cache::default(),
-        })
+        LinearSystem::new(self, SlowLines::Flow)
     }
 }
 
@@ -203,6 +201,40 @@ fn sum<T: Scalar>(
 }
 
 impl LinearSystem {
+    fn new(point: &OperatingPoint, slow: SlowLines) -> Result<Self> {
+        let vehicle = &point.vehicle;
+        let assembly: Assembly<f64> = assemble(vehicle.structure(), vehicle.numbers(), slow)?;
+        let mass = sum(&assembly, |element| element.mass, Some(&assembly.body));
+        let damping = sum(&assembly, |element| element.damping, None);
+        let stiffness = sum(&assembly, |element| element.stiffness, None);
+        Ok(Self {
+            point: point.clone(),
+            coordinates: assembly.coordinates.iter().map(ToString::to_string).collect(),
+            volumes: assembly.volumes,
+            elements: assembly.elements,
+            pressures: assembly.pressures,
+            positions: assembly.positions,
+            body: assembly.body,
+            mass,
+            damping,
+            stiffness,
+            circulations: assembly.circulations,
+            carried: assembly.carried,
+            quasi_static: Cache::default(),
+            damped: Cache::default(),
+            shut: Cache::default(),
+        })
+    }
+
+    /// The system with slow lines shut, which is itself where there are none.
+    pub(crate) fn with_slow_lines_shut(&self) -> Result<&Self> {
+        if self.point.slow_lines.is_empty() {
+            return Ok(self);
+        }
+        let shut = self.shut.get(|| Self::new(&self.point, SlowLines::Shut).map(Box::new));
+        shut.as_ref().map(|shut| &**shut).map_err(Clone::clone)
+    }
+
     /// The system with every line locked: volumes stay where they are.
     pub(crate) fn locked(&self) -> Result<Self> {
         if let Some(chamber) = &self.carried {
@@ -213,13 +245,13 @@ impl LinearSystem {
                 ),
             });
         }
-        let keep: Vec<usize> =
-            (0..self.coordinates.len()).filter(|&i| !self.coordinates[i].starts_with("circuits.")).collect();
+        let keep: Vec<usize> = (0..self.coordinates.len()).filter(|i| !self.volumes.contains(i)).collect();
         let matrix = |full: &DMatrix<f64>| DMatrix::from_fn(keep.len(), keep.len(), |i, j| full[(keep[i], keep[j])]);
         let row = |full: &Vec<f64>| keep.iter().map(|&i| full[i]).collect::<Vec<f64>>();
         Ok(Self {
             point: self.point.clone(),
             coordinates: keep.iter().map(|&i| self.coordinates[i].clone()).collect(),
+            volumes: Vec::new(),
             elements: self
                 .elements
                 .iter()
@@ -239,6 +271,7 @@ impl LinearSystem {
             carried: None,
             quasi_static: Cache::default(),
             damped: Cache::default(),
+            shut: Cache::default(),
         })
     }
 
@@ -254,13 +287,12 @@ impl LinearSystem {
 
     /// Unit of each coordinate.
     pub fn coordinate_units(&self) -> Vec<&'static str> {
-        let unit = |(index, name): (usize, &String)| match index {
+        let unit = |index: usize| match index {
             1 | 2 => "rad",
-            0..7 => "m",
-            _ if name.starts_with("circuits.") => "m^3",
+            _ if self.volumes.contains(&index) => "m^3",
             _ => "m",
         };
-        self.coordinates.iter().enumerate().map(unit).collect()
+        (0..self.coordinates.len()).map(unit).collect()
     }
 
     /// The elements that the matrices are made of.

@@ -136,7 +136,7 @@ fn field_at(tree: &Tree, schema: &'static Schema, path: &str) -> Option<&'static
     let (head, rest) = path.split_once('.').unwrap_or((path, ""));
     let field = schema.fields.iter().find(|field| field.name == head)?;
     match &field.kind {
-        Kind::Number { .. } => rest.is_empty().then_some(field),
+        Kind::Number { .. } | Kind::Flag => rest.is_empty().then_some(field),
         Kind::Table { schema, .. } => field_at(tree.get(head)?.as_object()?, schema, rest),
         Kind::Named { schema } => {
             let (name, rest) = rest.split_once('.')?;
@@ -214,10 +214,14 @@ fn insert(tree: &mut Tree, keys: &[&str], value: Value) {
         [last] => {
             tree.insert((*last).to_owned(), value);
         }
-        [first, rest @ ..] => {
-            if let Some(Value::Object(inner)) = tree.get_mut(*first) {
-                insert(inner, rest, value);
+        [first, rest @ ..] => match (tree.get_mut(*first), rest) {
+            (Some(Value::Object(inner)), _) => insert(inner, rest, value),
+            (Some(Value::Array(list)), [place]) => {
+                if let Some(item) = place.parse().ok().and_then(|place: usize| list.get_mut(place)) {
+                    *item = value;
+                }
             }
-        }
+            _ => {}
+        },
     }
 }

@@ -121,7 +121,7 @@ impl Vehicle {
             .iter()
             .zip(self.numbers.iter())
             .filter_map(|(parameter, &value)| {
-                let Kind::Number { unit, bounds, .. } = parameter.field.kind else { return None };
+                let (unit, bounds) = parameter.field.kind.number()?;
                 let meaning = parameter.field.meaning.trim();
                 Some(Parameter { path: parameter.path.clone(), value, unit, meaning, bounds })
             })
@@ -190,5 +190,5 @@ impl Vehicle {
 
 /// Whether a number may be left out of the file.
 pub(crate) fn is_optional(kind: &Kind) -> bool {
-    matches!(kind, Kind::Number { presence, .. } if *presence != Presence::Required)
+    matches!(kind, Kind::Flag) || matches!(kind, Kind::Number { presence, .. } if *presence != Presence::Required)
 }

@@ -4,7 +4,9 @@ use serde_json::Value;
 
 use crate::axes::CORNERS;
 use crate::error::Violation;
-use crate::spec::{Kind, Parameter, Slot, Spec, Tree, chamber};
+use crate::spec::{Parameter, Slot, Spec, Tree, chamber, nearest};
+
+mod parts;
 
 /// Rules on groups of the raw file: pairs, layouts, cylinders.
 pub(super) fn groups(tree: &Tree) -> Vec<Violation> {
@@ -63,22 +65,28 @@ pub(super) fn connections(spec: &Spec<Slot>) -> Vec<Violation> {
                 let known: Vec<String> = known.collect();
                 violations.push(
                     Violation::new(path, format!("\"{key}\""), "no such chamber")
-                        .hint(crate::spec::nearest(key, known.iter().map(String::as_str))),
+                        .hint(nearest(key, known.iter().map(String::as_str))),
                 );
                 continue;
             };
+            let cylinder = spec.corner(corner).and_then(|corner| corner.cylinder.as_ref());
             if spec.corner(corner).is_some_and(|corner| corner.cylinder.is_none()) {
                 violations.push(Violation::new(path, "", "the corner has no cylinder"));
+            } else if !bump && cylinder.is_some_and(|cylinder| !cylinder.kind.has_rebound_port()) {
+                violations.push(
+                    Violation::new(path, "", "the cylinder has no such port").hint("its one port is the bump chamber"),
+                );
             } else if let Some(other) = owner[corner.index()][usize::from(bump)].replace(name) {
                 violations.push(Violation::new(path, "", format!("the chamber is already in circuit {other}")));
             }
         }
     }
     for corner in CORNERS {
-        if spec.corner(corner).is_none_or(|corner| corner.cylinder.is_none()) {
-            continue;
-        }
+        let Some(cylinder) = spec.corner(corner).and_then(|corner| corner.cylinder.as_ref()) else { continue };
         for (bump, side) in [(true, "bump"), (false, "rebound")] {
+            if !bump && !cylinder.kind.has_rebound_port() {
+                continue;
+            }
             if owner[corner.index()][usize::from(bump)].is_none() {
                 violations.push(
                     Violation::new(
@@ -94,14 +102,72 @@ pub(super) fn connections(spec: &Spec<Slot>) -> Vec<Violation> {
     if !spec.circuits.0.is_empty() && spec.oil.is_none() {
         violations.push(Violation::new("oil", "", "is missing").hint("circuits need oil"));
     }
+    violations.extend(places(spec));
     violations
+}
+
+// Names of circuits and nodes that other parts speak of.
+fn places(spec: &Spec<Slot>) -> Vec<Violation> {
+    let mut violations = Vec::new();
+    let circuits = || spec.circuits.0.keys().map(String::as_str);
+    let nodes = || spec.nodes.0.keys().map(String::as_str);
+    for (name, node) in &spec.nodes.0 {
+        if spec.circuits.0.contains_key(name) {
+            violations.push(
+                Violation::new(format!("nodes.{name}"), "", "a circuit has the same name")
+                    .hint("lines speak of circuits and nodes by name"),
+            );
+        }
+        if !node.circuit.is_empty() && !spec.circuits.0.contains_key(&node.circuit) {
+            violations.push(unknown(&format!("nodes.{name}.circuit"), &node.circuit, "no such circuit", circuits()));
+        }
+    }
+    for (name, line) in &spec.lines.0 {
+        for (end, place) in [("from", &line.from), ("to", &line.to)] {
+            if !place.is_empty() && !spec.circuits.0.contains_key(place) && !spec.nodes.0.contains_key(place) {
+                let path = format!("lines.{name}.{end}");
+                violations.push(unknown(&path, place, "no such circuit or node", circuits().chain(nodes())));
+            }
+        }
+        if line.from == line.to && !line.from.is_empty() {
+            violations.push(Violation::new(
+                format!("lines.{name}.to"),
+                format!("\"{}\"", line.to),
+                "is where it starts",
+            ));
+        }
+    }
+    for (name, circuit) in &spec.circuits.0 {
+        let ports = circuit.chambers.0.iter().map(|(key, port)| (format!("chambers.{key}"), &port.node));
+        let gas = circuit.accumulators.0.iter().map(|(key, own)| (format!("accumulators.{key}"), &own.node));
+        for (key, node) in ports.chain(gas) {
+            let Some(node) = node else { continue };
+            let path = format!("circuits.{name}.{key}.node");
+            match spec.nodes.0.get(node) {
+                None => violations.push(unknown(&path, node, "no such node", nodes())),
+                Some(own) if own.circuit != *name => violations.push(Violation::new(
+                    path,
+                    format!("\"{node}\""),
+                    format!("the node is in circuit {}", own.circuit),
+                )),
+                Some(_) => {}
+            }
+        }
+    }
+    violations
+}
+
+fn unknown<'a>(path: &str, name: &str, rule: &str, known: impl Iterator<Item = &'a str>) -> Violation {
+    let known: Vec<&str> = known.collect();
+    let hint = if known.is_empty() { "there is none".into() } else { nearest(name, known.into_iter()) };
+    Violation::new(path, format!("\"{name}\""), rule).hint(hint)
 }
 
 /// Bounds of every number and the rules between numbers.
 pub(super) fn check(spec: &Spec<Slot>, parameters: &[Parameter], numbers: &[f64]) -> Vec<Violation> {
     let mut violations = Vec::new();
     for (parameter, &value) in parameters.iter().zip(numbers) {
-        if let Kind::Number { unit, bounds, .. } = &parameter.field.kind
+        if let Some((unit, bounds)) = parameter.field.kind.number()
             && !value.is_nan()
             && !bounds.holds(value)
         {
@@ -111,10 +177,7 @@ pub(super) fn check(spec: &Spec<Slot>, parameters: &[Parameter], numbers: &[f64]
     let value = |slot: Slot| numbers[slot.0];
     let mut broken = |slot: Slot, rule: String, hint: &str| {
         let parameter = &parameters[slot.0];
-        let unit = match parameter.field.kind {
-            Kind::Number { unit, .. } => unit,
-            _ => "",
-        };
+        let unit = parameter.field.kind.number().map_or("", |(unit, _)| unit);
         let violation = Violation::new(&parameter.path, numbers[slot.0].to_string(), rule).unit(unit).hint(hint);
         if !violations.contains(&violation) {
             violations.push(violation);
@@ -158,18 +221,6 @@ pub(super) fn check(spec: &Spec<Slot>, parameters: &[Parameter], numbers: &[f64]
             "oil thins as it warms",
         );
     }
-    for circuit in spec.circuits.0.values() {
-        for accumulator in circuit.accumulators.0.values() {
-            match (accumulator.volume, accumulator.gas_volume) {
-                (Some(volume), Some(_)) => {
-                    broken(volume, "stands beside gas_volume".into(), "give one; the other follows");
-                }
-                (None, None) => {
-                    broken(accumulator.precharge, "needs a volume beside it".into(), "give volume or gas_volume");
-                }
-                _ => {}
-            }
-        }
-    }
+    violations.extend(parts::check(spec, parameters, numbers));
     violations
 }

@@ -36,6 +36,7 @@ pub(crate) struct ElementNames {
     pub corners: [CornerNames; 4],
     pub front_bar: Arc<str>,
     pub rear_bar: Arc<str>,
+    pub links: Vec<Arc<str>>,
 }
 
 #[derive(Debug)]
@@ -44,11 +45,13 @@ pub(crate) struct CornerNames {
     pub tyre: Arc<str>,
     pub spring: Arc<str>,
     pub damper: Arc<str>,
+    pub damper_friction: Arc<str>,
     pub mount: Arc<str>,
+    pub cylinder_friction: Arc<str>,
 }
 
 impl ElementNames {
-    fn new() -> Self {
+    fn new(spec: &Spec<Slot>) -> Self {
         let corners = CORNERS.map(|corner| {
             let name = |part: &str| Arc::from(format!("{}.{part}", corner.name()));
             CornerNames {
@@ -56,10 +59,13 @@ impl ElementNames {
                 tyre: name("tyre"),
                 spring: name("spring"),
                 damper: name("damper"),
+                damper_friction: name("damper.friction"),
                 mount: name("mount"),
+                cylinder_friction: name("cylinder.friction"),
             }
         });
-        Self { corners, front_bar: "front.anti_roll_bar".into(), rear_bar: "rear.anti_roll_bar".into() }
+        let links = spec.links.0.keys().map(|name| format!("links.{name}").into()).collect();
+        Self { corners, front_bar: "front.anti_roll_bar".into(), rear_bar: "rear.anti_roll_bar".into(), links }
     }
 }
 
@@ -79,10 +85,20 @@ impl Structure {
     }
 
     /// Whether the number stands where a change of it would alter the coordinates: a way without resistance and
-    /// inertance, whose throttle would open one more.
+    /// inertance that it would open one more in, a node that it would give compliance.
     pub(crate) fn decides_structure(&self, slot: usize, numbers: &[f64]) -> bool {
-        let ideal = |line: &crate::hydraulics::Line| line.pipe.is_none() && numbers[line.throttle.0] == 0.0;
-        self.network.lines.iter().any(|line| line.throttle.0 == slot && ideal(line))
+        if numbers[slot] != 0.0 {
+            return false;
+        }
+        let kinds = |numbers: &[f64]| {
+            let values = self.network.values(&self.spec, numbers);
+            let lines = values.lines.iter().map(|line| (line.is_ideal(), line.inertance > 0.0));
+            let nodes = (0..self.network.nodes.len()).map(|node| values.node_compliance(node) > 0.0);
+            (lines.collect::<Vec<_>>(), nodes.collect::<Vec<_>>())
+        };
+        let mut moved = numbers.to_vec();
+        moved[slot] = f64::MIN_POSITIVE.sqrt();
+        kinds(numbers) != kinds(&moved)
     }
 
     /// The file's tree with numbers in SI.
@@ -147,9 +163,9 @@ impl Vehicle {
             given: tree,
             parameters: reading.parameters,
             readable,
+            names: ElementNames::new(&spec),
             spec,
             network,
-            names: ElementNames::new(),
         };
         Ok(Self { structure: Arc::new(structure), numbers: reading.numbers.into() })
     }
@@ -199,7 +215,8 @@ fn settings_to_si(
             };
             match number(parameters[slot].field, &place, &value, atmosphere) {
                 Ok(number) => {
-                    set.insert(path, number.into());
+                    let flag = matches!(parameters[slot].field.kind, crate::spec::Kind::Flag);
+                    set.insert(path, if flag { (number == 1.0).into() } else { number.into() });
                 }
                 Err(violation) => violations.push(violation),
             }
