@@ -21,6 +21,7 @@ mod poles;
 mod random;
 mod sensitivities;
 mod shares;
+mod spectra;
 mod statics;
 mod support;
 mod sweeps;

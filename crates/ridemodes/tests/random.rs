@@ -15,18 +15,21 @@ pub(crate) struct Wanted {
     pub(crate) compressible: bool,
     /// Lines may have inertance.
     pub(crate) inertance: bool,
+    /// Nodes and lines beside the circuits, valves, links, friction, cylinders of any kind.
+    pub(crate) network: bool,
 }
 
-pub(crate) const ANY: Wanted = Wanted { symmetric: false, oil: true, compressible: false, inertance: true };
+pub(crate) const ANY: Wanted = Wanted { symmetric: false, oil: true, compressible: false, inertance: true, network: false };
 pub(crate) const COMPRESSIBLE: Wanted = Wanted { compressible: true, ..ANY };
 pub(crate) const SYMMETRIC: Wanted = Wanted { symmetric: true, ..ANY };
+pub(crate) const NETWORK: Wanted = Wanted { network: true, ..ANY };
 pub(crate) const DRY: Wanted = Wanted { oil: false, ..ANY };
 
 const KINDS: [&str; 6] = ["roll", "pitch", "diagonal", "heave", "axle_roll", "one by one"];
 
 /// Cars as data in SI.
 pub(crate) fn cars(wanted: Wanted) -> impl Strategy<Value = Value> {
-    vec(0.0..1.0, 150).prop_map(move |rolls| Dice { rolls, next: 0 }.car(wanted))
+    vec(0.0..1.0, 400).prop_map(move |rolls| Dice { rolls, next: 0 }.car(wanted))
 }
 
 // Numbers between 0 and 1, taken one after the other.
@@ -75,6 +78,9 @@ impl Dice {
             car["temperature"] = json!(self.within(263.0, 343.0));
             car["oil"] = self.oil(wanted);
             self.circuits(&mut car, wanted);
+            if wanted.network {
+                self.network(&mut car, wanted);
+            }
         }
         car
     }
@@ -167,6 +173,120 @@ impl Dice {
             };
             circuit["chambers"] = chambers.map(str::to_owned).into_iter().zip(ways).collect();
             car["circuits"][name] = circuit;
+        }
+    }
+
+    // Nodes, and lines between whatever has one pressure; closed loops come by themselves.
+    fn network(&mut self, car: &mut Value, wanted: Wanted) {
+        let layout = car.get("layout").is_some();
+        let names: Vec<String> = match car["layout"]["kind"].as_str() {
+            None => car["circuits"].as_object().unwrap().keys().cloned().collect(),
+            Some("roll") => ["left", "right"].map(str::to_owned).to_vec(),
+            Some("pitch") => ["front", "rear"].map(str::to_owned).to_vec(),
+            Some("heave") => ["bump", "rebound"].map(str::to_owned).to_vec(),
+            Some(_) => ["front_left", "front_right", "rear_left", "rear_right"].map(str::to_owned).to_vec(),
+        };
+        let mut places: Vec<(String, String)> = names.iter().map(|name| (name.clone(), name.clone())).collect();
+        let mut lines = serde_json::Map::new();
+        for node in ["tee", "spur", "branch"].iter().take(self.pick(4)) {
+            let circuit = names[self.pick(names.len())].clone();
+            car["nodes"][*node] = json!({ "circuit": circuit });
+            if wanted.compressible || self.chance(0.5) {
+                car["nodes"][*node]["volume"] = json!(self.within(5e-6, 50e-6));
+            }
+            if self.chance(0.3) {
+                car["nodes"][*node]["compliance"] = json!(self.scale(1e-14, 1e-12));
+            }
+            lines.insert(format!("to_{node}"), self.line(&circuit, node, wanted));
+            if !layout && self.chance(0.5) {
+                let gas = car["circuits"][&circuit]["accumulators"].as_object_mut().unwrap();
+                gas.values_mut().next().unwrap()["node"] = json!(node);
+            }
+            places.push(((*node).to_owned(), circuit));
+        }
+        for k in 0..self.pick(4) {
+            let (a, b) = (self.pick(places.len()), self.pick(places.len()));
+            if a != b && (layout || places[a].1 == places[b].1) {
+                lines.insert(format!("extra_{k}"), self.line(&places[a].0, &places[b].0, wanted));
+            }
+        }
+        car["lines"] = Value::Object(lines);
+        for name in ["heave", "twist"].iter().take(self.pick(3)) {
+            let mut link = json!({ "front_left": 1.0 });
+            for corner in ["front_right", "rear_left", "rear_right"] {
+                link[corner] = json!(self.within(-1.0, 1.0));
+            }
+            for (field, least, most) in [("rate", 1e3, 5e4), ("damping", 1e2, 2e3), ("inertance", 1.0, 100.0)] {
+                if self.chance(0.6) {
+                    link[field] = json!(self.scale(least, most));
+                }
+            }
+            car["links"][*name] = link;
+        }
+        for axle in ["front", "rear"] {
+            for side in ["both", "left", "right"] {
+                if let Some(corner) = car[axle].get_mut(side) {
+                    self.parts(corner, layout && names[0] != "bump");
+                }
+            }
+        }
+    }
+
+    fn line(&mut self, from: &str, to: &str, wanted: Wanted) -> Value {
+        let mut line = json!({ "from": from, "to": to });
+        let way = self.way(wanted);
+        if let Some(throttle) = way.get("throttle") {
+            line["throttle"] = throttle.clone();
+        }
+        for (key, value) in way["line"].as_object().into_iter().flatten() {
+            line[key] = value.clone();
+        }
+        if line.get("length").is_some() {
+            line["pieces"] = json!(1 + self.pick(3));
+            if self.chance(0.4) {
+                line["swell"] = json!(self.scale(1e-15, 1e-12));
+            }
+        } else if self.chance(0.3) {
+            line["resistance"] = json!(self.scale(1e7, 1e9));
+            line["inertance"] = json!(if wanted.inertance { self.scale(1e5, 1e7) } else { 0.0 });
+            line["volume"] = json!(self.within(5e-6, 50e-6));
+            line["compliance"] = json!(self.scale(1e-14, 1e-12));
+        }
+        if self.chance(0.3) {
+            line["valve"] = self.valve();
+        }
+        line
+    }
+
+    fn valve(&mut self) -> Value {
+        let mut valve = match self.pick(4) {
+            0 => json!({ "kind": "check", "throttle": self.scale(1e8, 3e9), "open_resistance": self.scale(1e6, 1e8),
+                         "cracking_pressure": self.within(0.0, 2e5) }),
+            1 => json!({ "kind": "split", "forward": self.scale(1e7, 1e9), "backward": self.scale(1e7, 1e9) }),
+            2 => json!({ "kind": "table", "flow": [0.0, 5e-5, 2e-4], "pressure_drop": [0.0, 2e5, 4e5] }),
+            _ => json!({ "kind": "orifice", "diameter": self.within(1e-3, 4e-3) }),
+        };
+        valve["amplitude"] = json!(self.scale(1e-5, 3e-4));
+        valve["motion"] = json!(["random", "harmonic"][self.pick(2)]);
+        valve
+    }
+
+    fn parts(&mut self, corner: &mut Value, any_kind: bool) {
+        if self.chance(0.4) {
+            corner["damper"] = json!({
+                "velocity": [-1.0, -0.1, 0.0, 0.1, 1.0], "force": [-2400.0, -500.0, 0.0, 300.0, 1200.0],
+                "amplitude": self.scale(0.02, 0.5), "friction": self.within(0.0, 60.0),
+            });
+        }
+        let kinds = ["double_acting", "through_rod", "single_acting", "piston_valve"];
+        let kind = kinds[self.pick(if any_kind { 4 } else { 2 })];
+        corner["cylinder"]["kind"] = json!(kind);
+        if kind == "piston_valve" && self.chance(0.7) {
+            corner["cylinder"]["piston_throttle"] = json!(self.scale(1e8, 3e9));
+        }
+        if self.chance(0.5) {
+            corner["cylinder"]["friction"] = json!(self.within(10.0, 120.0));
+            corner["cylinder"]["amplitude"] = json!(self.scale(0.02, 0.3));
         }
     }
 

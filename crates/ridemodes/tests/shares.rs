@@ -45,7 +45,7 @@ fn check_shapes(lin: &LinearSystem, modes: &Modes) -> Result<(), TestCaseError> 
     for row in 0..modes.len() {
         let (pole, psi) = (modes.pole[row], shape(modes, row));
         let left = residual(lin, pole, &psi);
-        prop_assert!(left <= 1e-7, "{} at {}: {:e}", modes.label[row], pole, left);
+        prop_assert!(left <= 1e-11, "{} at {}: {:e}", modes.label[row], pole, left);
         if pole.im == 0.0 {
             continue;
         }

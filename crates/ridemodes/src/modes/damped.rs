@@ -5,7 +5,7 @@
 //! of the eigenvalues stays relative to that. Eigenvalues and vectors come from faer, which brings
 //! vectors of non-symmetric matrices (also where poles repeat) in pure Rust.
 
-use nalgebra::DMatrix;
+use nalgebra::{DMatrix, DVector};
 use num_complex::Complex64;
 
 use super::RawMode;
@@ -41,8 +41,15 @@ pub(super) fn solve(system: &LinearSystem) -> Result<Vec<RawMode>> {
             modes.push(RawMode { pole, shape: form.shape(pole, state) });
         }
     }
-    for mode in &mut modes {
-        mode.pole = refined(system, mode, 64.0 * rounding);
+    for row in 0..modes.len() {
+        // A step is safe while it stays well nearer to this pole than to any other, its own conjugate among them.
+        let pole = modes[row].pole;
+        let others = (0..modes.len()).filter(|&other| other != row).map(|other| modes[other].pole);
+        let conjugate = (pole.im > 0.0).then(|| pole.conj());
+        let gap = others.chain(conjugate).fold(f64::INFINITY, |least, other| least.min((pole - other).norm()));
+        let reach = (64.0 * rounding).max(0.05 * gap.min(pole.norm()));
+        modes[row].pole = refined(system, &modes[row], reach);
+        polish(system, &mut modes[row], reach);
     }
     modes.sort_by(|a, b| a.pole.norm().total_cmp(&b.pole.norm()).then(a.pole.re.total_cmp(&b.pole.re)));
     Ok(modes)
@@ -81,7 +88,7 @@ fn mend_repeated(state: &DMatrix<f64>, poles: &[Complex64], vectors: &mut DMatri
 // One Newton step on ψᵀ(λ²M + λC + K)ψ = 0. The eigensolver's rounding is relative to the largest pole; the
 // quotient is stationary in the shape (left vectors are right vectors, transposed), so it gives slow poles beside
 // stiff oil their digits back. It is summed over the elements, whose travels are small where the oil is stiff.
-fn refined(system: &LinearSystem, mode: &RawMode, rounding: f64) -> Complex64 {
+fn refined(system: &LinearSystem, mode: &RawMode, reach: f64) -> Complex64 {
     let (pole, shape) = (mode.pole, &mode.shape);
     let mut value = Complex64::new(0.0, 0.0);
     let mut slope = value;
@@ -98,10 +105,56 @@ fn refined(system: &LinearSystem, mode: &RawMode, rounding: f64) -> Complex64 {
             add(system.body[i][j], 0.0, 0.0, shape[i] * shape[j]);
         }
     }
-    // A longer step than the eigensolver's rounding comes from a nearly defective pole or from a mix of two equal
-    // ones, where the slope vanishes: there is nothing to gain.
+    // A longer step comes from a nearly defective pole or from a mix of two equal ones, where the slope vanishes:
+    // there is nothing to gain.
     let step = value / slope;
-    if step.norm() <= rounding { pole - step } else { pole }
+    if step.norm() <= reach { pole - step } else { pole }
+}
+
+/// Residual of a shape, against the size of its terms, that is left as it is.
+const CLEAN: f64 = 1e-13;
+
+// Inverse iteration (λ²M + λC + K)ψ' = (2λM + C)ψ: the eigensolver's shapes carry its rounding, relative to the
+// largest pole; beside stiff oil that is seen. With this right-hand side a shape keeps apart from those of nearly
+// equal poles. What is left then is small in 2λM + C and large in K; a plain step, with ψ itself, takes it out.
+fn polish(system: &LinearSystem, mode: &mut RawMode, reach: f64) {
+    let n = mode.shape.len();
+    let (mass, damping, stiffness) = (system.mass(), system.damping(), system.stiffness());
+    for plain in [false, true] {
+        let (pole, size) = (mode.pole, mode.pole.norm());
+        // Every coordinate in its own unit, in which the terms are of size 1.
+        let unit: Vec<f64> = (0..n)
+            .map(|i| (size * (size * mass[(i, i)] + damping[(i, i)]) + stiffness[(i, i)].abs()).sqrt())
+            .collect();
+        if unit.contains(&0.0) {
+            return; // a circulation without inertance and resistance
+        }
+        let form = |i: usize, j: usize| {
+            (pole * (pole * mass[(i, j)] + damping[(i, j)]) + stiffness[(i, j)]) / (unit[i] * unit[j])
+        };
+        let dynamic = DMatrix::from_fn(n, n, form);
+        let residual = |x: &DVector<Complex64>| (&dynamic * x).norm() / x.norm();
+        let start = DVector::from_fn(n, |i, _| mode.shape[i] * unit[i]);
+        let before = residual(&start);
+        if before <= CLEAN {
+            return;
+        }
+        let right = DVector::from_fn(n, |i, _| {
+            if plain {
+                return start[i];
+            }
+            (0..n).map(|j| (pole * 2.0 * mass[(i, j)] + damping[(i, j)]) * mode.shape[j]).sum::<Complex64>() / unit[i]
+        });
+        // At a pole exact to the last digit the matrix may come out singular; next to it it is not.
+        let near = || &dynamic + DMatrix::from_diagonal_element(n, n, Complex64::from(4.0 * f64::EPSILON));
+        let solved = dynamic.clone().lu().solve(&right).or_else(|| near().lu().solve(&right));
+        let Some(better) = solved else { return };
+        if !(better.norm().is_finite() && residual(&better) < before) {
+            return;
+        }
+        mode.shape = (0..n).map(|i| better[i] / (unit[i] * better.norm())).collect();
+        mode.pole = refined(system, mode, reach);
+    }
 }
 
 // Two equal real poles: the real and the imaginary part of the pair's vector span their shapes. Of a defective
