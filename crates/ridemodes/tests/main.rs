@@ -15,6 +15,7 @@ mod invariants;
 mod layers;
 mod matrices;
 mod motions;
+mod networks;
 mod oil;
 mod paths;
 mod poles;

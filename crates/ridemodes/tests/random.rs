@@ -19,7 +19,8 @@ pub(crate) struct Wanted {
     pub(crate) network: bool,
 }
 
-pub(crate) const ANY: Wanted = Wanted { symmetric: false, oil: true, compressible: false, inertance: true, network: false };
+pub(crate) const ANY: Wanted =
+    Wanted { symmetric: false, oil: true, compressible: false, inertance: true, network: false };
 pub(crate) const COMPRESSIBLE: Wanted = Wanted { compressible: true, ..ANY };
 pub(crate) const SYMMETRIC: Wanted = Wanted { symmetric: true, ..ANY };
 pub(crate) const NETWORK: Wanted = Wanted { network: true, ..ANY };

@@ -123,9 +123,8 @@ fn polish(system: &LinearSystem, mode: &mut RawMode, reach: f64) {
     for plain in [false, true] {
         let (pole, size) = (mode.pole, mode.pole.norm());
         // Every coordinate in its own unit, in which the terms are of size 1.
-        let unit: Vec<f64> = (0..n)
-            .map(|i| (size * (size * mass[(i, i)] + damping[(i, i)]) + stiffness[(i, i)].abs()).sqrt())
-            .collect();
+        let unit: Vec<f64> =
+            (0..n).map(|i| (size * (size * mass[(i, i)] + damping[(i, i)]) + stiffness[(i, i)].abs()).sqrt()).collect();
         if unit.contains(&0.0) {
             return; // a circulation without inertance and resistance
         }

@@ -12,6 +12,8 @@ const ANY: Bounds = Bounds::ANY;
 const NOT_NEGATIVE: Bounds = Bounds::NOT_NEGATIVE;
 const POSITIVE: Bounds = Bounds::POSITIVE;
 const RESISTANCE: Bounds = Bounds::within(0.0, 1e15);
+/// The two-viscosity law needs more than 0.3 mm²/s.
+const VISCOSITY: Bounds = Bounds::within(4e-7, 0.1);
 const COMPLIANCE: Bounds = Bounds::within(0.0, 1e-6);
 const OPENING: Bounds = Bounds::up_to(1e15);
 
@@ -246,9 +248,9 @@ tables! {
         /// Bulk modulus without air; absent means incompressible.
         bulk_modulus: Option<N> = optional("Pa", POSITIVE),
         /// Kinematic viscosity at 40 °C.
-        kinematic_viscosity: N = number("m^2/s", Bounds::up_to(0.1)),
+        kinematic_viscosity: N = number("m^2/s", VISCOSITY),
         /// Kinematic viscosity at 100 °C.
-        kinematic_viscosity_hot: N = number("m^2/s", Bounds::up_to(0.1)),
+        kinematic_viscosity_hot: N = number("m^2/s", VISCOSITY),
         /// Thermal expansion.
         expansion: N = number("1/K", NOT_NEGATIVE, 7e-4),
         /// Volume of entrained air per volume of oil at atmospheric pressure.
