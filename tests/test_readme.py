@@ -39,3 +39,20 @@ def test_file_section_is_of_the_example():
     for table, values in tomllib.loads(given).items():
         assert table in car
         assert set(values) <= set(car[table]), table
+
+
+def test_how_to_is_one_file_that_loads(tmp_path, monkeypatch):
+    page = Path(__file__).parent.parent / "crates/ridemodes/docs/from_sketch_to_file.md"
+    text = page.read_text(encoding="utf-8")
+    file = "\n".join(re.findall(r"```toml\n(.*?)```", text, re.DOTALL))
+    (tmp_path / "car.toml").write_text(file, encoding="utf-8")
+    monkeypatch.chdir(tmp_path)
+    [code] = re.findall(r"```python\n(.*?)```", text, re.DOTALL)
+    names = {}
+    with contextlib.redirect_stdout(io.StringIO()) as printed:
+        exec(code, names)
+    assert "time constant" in printed.getvalue()
+    assert "warning: front" not in printed.getvalue()
+    oil = names["lin"].motions().stiffness_oil.diagonal()
+    assert oil[2] > 10 * oil[3]
+    assert len(names["locked"].closed_off) == 3

@@ -55,13 +55,14 @@ def test_every_parameter_has_its_unit_and_meaning_there(car):
     for parameter in car.parameters():
         node = rm.schema()
         for key in parameter.path.split("."):
-            node = (
-                node["properties"][key]
-                if key in node.get("properties", {})
-                else node["additionalProperties"]
-            )
+            meaning = node.get("description")
+            if key in node.get("properties", {}):
+                node = node["properties"][key]
+            else:
+                node = node["items"] if key.isdigit() else node["additionalProperties"]
         assert node["unit"] == parameter.unit
-        assert node["description"] == parameter.meaning
+        # An entry of a list has the meaning of the list.
+        assert node.get("description", meaning) == parameter.meaning
 
 
 def test_command_prints_it():

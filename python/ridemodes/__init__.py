@@ -18,6 +18,7 @@ from typing import TYPE_CHECKING, Any
 
 from ._core import (
     CAUTION,
+    ClosedOff,
     Decoupling,
     Element,
     LinearSystem,
@@ -26,6 +27,7 @@ from ._core import (
     OperatingPoint,
     Parameter,
     Sensitivities,
+    SlowLine,
     StateSpace,
     Sweep,
     Table,
@@ -44,6 +46,7 @@ if TYPE_CHECKING:
 
 __all__ = [
     "CAUTION",
+    "ClosedOff",
     "Decoupling",
     "Element",
     "InvalidInput",
@@ -57,6 +60,7 @@ __all__ = [
     "RidemodesError",
     "Sensitivities",
     "Singular",
+    "SlowLine",
     "StateSpace",
     "Sweep",
     "Table",

@@ -13,7 +13,7 @@ from numpy.typing import NDArray
 from os import PathLike
 from typing import Any, Final, SupportsFloat, SupportsIndex, final
 
-__all__ = ["CAUTION", "VERSION", "Decoupling", "Element", "LinearSystem", "Modes", "Motions", "OperatingPoint", "Parameter", "Sensitivities", "StateSpace", "Sweep", "Table", "Vehicle", "example", "examples", "load", "loads", "schema"]
+__all__ = ["CAUTION", "VERSION", "ClosedOff", "Decoupling", "Element", "LinearSystem", "Modes", "Motions", "OperatingPoint", "Parameter", "Sensitivities", "SlowLine", "StateSpace", "Sweep", "Table", "Vehicle", "example", "examples", "load", "loads", "schema"]
 
 CAUTION: Final[str]
 """
@@ -24,6 +24,44 @@ VERSION: Final[str]
 """
 Version of the compiled core.
 """
+
+@final
+class ClosedOff:
+    """
+    Oil on one side of a line that is shut.
+    """
+    def __copy__(self, /) -> ClosedOff: ...
+    def __deepcopy__(self, /, _memo: Any) -> ClosedOff: ...
+    def __eq__(self, other: object, /) -> bool: ...
+    def __reduce__(self, /) -> "tuple[object, tuple[bytes]]": ...
+    def __repr__(self, /) -> str: ...
+    @staticmethod
+    def _restore(data: bytes) -> ClosedOff: ...
+    @property
+    def accumulators(self, /) -> list[str]:
+        """
+        Its accumulators.
+        """
+    @property
+    def compliance(self, /) -> float:
+        """
+        Compliance of all that it holds [m^3/Pa].
+        """
+    @property
+    def lines(self, /) -> list[str]:
+        """
+        Lines whose closing bounds it.
+        """
+    @property
+    def nodes(self, /) -> list[str]:
+        """
+        Its nodes.
+        """
+    @property
+    def pressure(self, /) -> float:
+        """
+        Absolute pressure [Pa].
+        """
 
 @final
 class Decoupling:
@@ -322,6 +360,11 @@ class Modes:
     @staticmethod
     def _restore(data: bytes) -> Modes: ...
     @property
+    def assumptions(self, /) -> list[str]:
+        """
+        What is taken for granted, e.g. that a slow line is shut.
+        """
+    @property
     def coordinates(self, /) -> list[str]:
         """
         Names of the coordinates, the columns of `shape`.
@@ -479,6 +522,11 @@ class Motions:
     def _repr_html_(self, /) -> str: ...
     @staticmethod
     def _restore(data: bytes) -> Motions: ...
+    @property
+    def assumptions(self, /) -> list[str]:
+        """
+        What is taken for granted, e.g. that a slow line is shut.
+        """
     @property
     def at_ground(self, /) -> NDArray[float64]:
         """
@@ -661,6 +709,11 @@ class OperatingPoint:
         Names of the circuits.
         """
     @property
+    def closed_off(self, /) -> list[ClosedOff]:
+        """
+        What lines that are shut have closed off.
+        """
+    @property
     def corner_load(self, /) -> NDArray[float64]:
         """
         Sprung corner loads [N].
@@ -669,6 +722,11 @@ class OperatingPoint:
     def deflection(self, /) -> NDArray[float64]:
         """
         Suspension deflections from the design condition, bump positive [m].
+        """
+    @property
+    def friction(self, /) -> NDArray[float64]:
+        """
+        Dry friction of damper and cylinder at each wheel, plus or minus [N].
         """
     @property
     def gas_volume(self, /) -> NDArray[float64]:
@@ -697,6 +755,11 @@ class OperatingPoint:
     def pressure(self, /) -> NDArray[float64]:
         """
         Absolute pressure of each circuit [Pa].
+        """
+    @property
+    def slow_lines(self, /) -> list[SlowLine]:
+        """
+        Lines that only balance slowly.
         """
     @property
     def spring_load(self, /) -> NDArray[float64]:
@@ -904,6 +967,34 @@ class Sensitivities:
     def values(self, /) -> NDArray[float64]:
         """
         Values of the numbers, in SI.
+        """
+
+@final
+class SlowLine:
+    """
+    A slow line between two parts of the oil.
+    """
+    def __copy__(self, /) -> SlowLine: ...
+    def __deepcopy__(self, /, _memo: Any) -> SlowLine: ...
+    def __eq__(self, other: object, /) -> bool: ...
+    def __reduce__(self, /) -> "tuple[object, tuple[bytes]]": ...
+    def __repr__(self, /) -> str: ...
+    @staticmethod
+    def _restore(data: bytes) -> SlowLine: ...
+    @property
+    def name(self, /) -> str:
+        """
+        Path of the line, e.g. ``lines.balance``.
+        """
+    @property
+    def resistance(self, /) -> float:
+        """
+        Its resistance [Pa*s/m^3].
+        """
+    @property
+    def time_constant(self, /) -> float:
+        """
+        Time in which a difference of pressure falls to 1/e with the wheels held [s].
         """
 
 @final

@@ -24,7 +24,7 @@ mod _core {
     #[pymodule_export]
     use crate::motions::Motions;
     #[pymodule_export]
-    use crate::point::OperatingPoint;
+    use crate::point::{ClosedOff, OperatingPoint, SlowLine};
     #[pymodule_export]
     use crate::sensitivities::Sensitivities;
     #[pymodule_export]

@@ -115,6 +115,12 @@ result_class! {
         self.kept[9].real(py, || Ok(self.core.dissipation.clone()))
     }
 
+    /// What is taken for granted, e.g. that a slow line is shut.
+    #[getter]
+    fn assumptions(&self) -> Vec<String> {
+        self.core.assumptions.clone()
+    }
+
     /// Names of the coordinates, the columns of `shape`.
     #[getter]
     fn coordinates(&self) -> Vec<String> {

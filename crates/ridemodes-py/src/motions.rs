@@ -181,6 +181,12 @@ result_class! {
         self.core.warnings.clone()
     }
 
+    /// What is taken for granted, e.g. that a slow line is shut.
+    #[getter]
+    fn assumptions(&self) -> Vec<String> {
+        self.core.assumptions.clone()
+    }
+
     /// Everything as a table, for people.
     ///
     /// Returns

@@ -1,13 +1,103 @@
 //! The operating point.
 
 use pyo3::prelude::*;
-use ridemodes::OperatingPoint as Core;
+use ridemodes::{ClosedOff as ClosedOffCore, OperatingPoint as Core, SlowLine as SlowLineCore};
 
 use crate::arrays::{Kept, Real, vector};
 use crate::errors::{labelled, raise};
 use crate::linear::LinearSystem;
-use crate::table::{Table, result_class};
+use crate::table::{Table, plain_class, result_class};
 use crate::vehicle::Vehicle;
+
+/// A slow line between two parts of the oil.
+#[pyclass(frozen, module = "ridemodes")]
+pub(crate) struct SlowLine {
+    core: SlowLineCore,
+}
+
+impl SlowLine {
+    fn new(core: SlowLineCore) -> Self {
+        Self { core }
+    }
+
+    fn text(&self) -> PyResult<String> {
+        let line = &self.core;
+        Ok(format!("SlowLine({}: {:.4e} Pa*s/m^3, {:.4} s)", line.name, line.resistance, line.time_constant))
+    }
+}
+
+plain_class! {
+    SlowLine, SlowLineCore;
+
+    /// Path of the line, e.g. ``lines.balance``.
+    #[getter]
+    fn name(&self) -> &str {
+        &self.core.name
+    }
+
+    /// Its resistance [Pa*s/m^3].
+    #[getter]
+    fn resistance(&self) -> f64 {
+        self.core.resistance
+    }
+
+    /// Time in which a difference of pressure falls to 1/e with the wheels held [s].
+    #[getter]
+    fn time_constant(&self) -> f64 {
+        self.core.time_constant
+    }
+}
+
+/// Oil on one side of a line that is shut.
+#[pyclass(frozen, module = "ridemodes")]
+pub(crate) struct ClosedOff {
+    core: ClosedOffCore,
+}
+
+impl ClosedOff {
+    fn new(core: ClosedOffCore) -> Self {
+        Self { core }
+    }
+
+    fn text(&self) -> PyResult<String> {
+        let part = &self.core;
+        Ok(format!("ClosedOff({} by {}: {:.4e} Pa)", part.nodes.join(", "), part.lines.join(", "), part.pressure))
+    }
+}
+
+plain_class! {
+    ClosedOff, ClosedOffCore;
+
+    /// Lines whose closing bounds it.
+    #[getter]
+    fn lines(&self) -> Vec<String> {
+        self.core.lines.clone()
+    }
+
+    /// Its nodes.
+    #[getter]
+    fn nodes(&self) -> Vec<String> {
+        self.core.nodes.clone()
+    }
+
+    /// Its accumulators.
+    #[getter]
+    fn accumulators(&self) -> Vec<String> {
+        self.core.accumulators.clone()
+    }
+
+    /// Absolute pressure [Pa].
+    #[getter]
+    fn pressure(&self) -> f64 {
+        self.core.pressure
+    }
+
+    /// Compliance of all that it holds [m^3/Pa].
+    #[getter]
+    fn compliance(&self) -> f64 {
+        self.core.compliance
+    }
+}
 
 /// Where and under which loads the vehicle stands.
 ///
@@ -24,6 +114,7 @@ pub(crate) struct OperatingPoint {
     spring_preload: Kept,
     pressure: Kept,
     gas_volume: Kept,
+    friction: Kept,
 }
 
 impl OperatingPoint {
@@ -39,6 +130,7 @@ impl OperatingPoint {
             spring_preload: Kept::default(),
             pressure: Kept::default(),
             gas_volume: Kept::default(),
+            friction: Kept::default(),
         }
     }
 
@@ -114,6 +206,24 @@ result_class! {
     #[getter]
     fn gas_volume<'py>(&self, py: Python<'py>) -> PyResult<Real<'py>> {
         self.gas_volume.real(py, || Ok(vector(&self.core.gas_volume)))
+    }
+
+    /// Lines that only balance slowly.
+    #[getter]
+    fn slow_lines(&self) -> Vec<SlowLine> {
+        self.core.slow_lines.iter().cloned().map(SlowLine::new).collect()
+    }
+
+    /// What lines that are shut have closed off.
+    #[getter]
+    fn closed_off(&self) -> Vec<ClosedOff> {
+        self.core.closed_off.iter().cloned().map(ClosedOff::new).collect()
+    }
+
+    /// Dry friction of damper and cylinder at each wheel, plus or minus [N].
+    #[getter]
+    fn friction<'py>(&self, py: Python<'py>) -> PyResult<Real<'py>> {
+        self.friction.real(py, || Ok(vector(self.core.friction.as_array())))
     }
 
     /// Absolute pressure of the air around [Pa].

@@ -81,6 +81,8 @@ pub struct Motions {
     pub element_damping: Vec<[f64; 4]>,
     /// What the engineer should know.
     pub warnings: Vec<String>,
+    /// What is taken for granted, e.g. that a slow line is shut.
+    pub assumptions: Vec<String>,
 }
 
 /// Couplings above this are warned of.
@@ -185,6 +187,7 @@ impl LinearSystem {
             element_stiffness,
             element_damping,
             warnings,
+            assumptions: self.point.assumptions(true),
         })
     }
 }

@@ -1,6 +1,6 @@
 //! What a law that is not linear amounts to at an amplitude: the coefficient that takes as much power.
 //!
-//! c = E[F v]/E[v²]. For a Gaussian v of r.m.s. σ this is the mean slope E[F′] (Stein's identity), and for a
+//! c = E[F v]/E[v²] (N6). For a Gaussian v of r.m.s. σ this is the mean slope E[F′] (Stein's identity), and for a
 //! piecewise linear law the sum of its slopes, each with the chance of being on it (T. K. Caughey 1963, statistical
 //! linearisation; from memory). For a sine of r.m.s. σ it is the describing function.
 
@@ -37,7 +37,7 @@ impl<T: Scalar> Pieces<T> {
 
     /// The equivalent coefficient at an r.m.s. amplitude.
     pub(crate) fn equivalent(&self, amplitude: T, motion: Motion) -> T {
-        // c = Σ slope_k (W(x_k+1) − W(x_k)), with W rising from 0 to 1
+        // (N7) c = Σ slope_k (W(x_k+1) − W(x_k)), with W rising from 0 to 1
         let mut total = self.slopes[0];
         for (k, &x) in self.breaks.iter().enumerate() {
             total += (self.slopes[k + 1] - self.slopes[k]) * (T::one() - weight_below(x / amplitude, motion));
@@ -55,7 +55,7 @@ fn weight_below<T: Scalar>(x: T, motion: Motion) -> T {
             if sine.value().abs() >= 1.0 {
                 return T::constant(f64::from(sine.value() > 0.0));
             }
-            // ½ + (t + sin t cos t)/π at sin t = x/x̂
+            // (N8) ½ + (t + sin t cos t)/π at sin t = x/x̂
             (sine.asin() + sine * (T::one() - sine.square()).sqrt()) / PI + 0.5
         }
     }

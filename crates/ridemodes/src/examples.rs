@@ -4,8 +4,9 @@ use crate::error::{Error, Result, Violation};
 use crate::spec::nearest;
 use crate::vehicle::Vehicle;
 
-const EXAMPLES: [(&str, &str); 4] = [
+const EXAMPLES: [(&str, &str); 5] = [
     ("delivery_van", include_str!("../data/delivery_van.toml")),
+    ("field_sprayer", include_str!("../data/field_sprayer.toml")),
     ("forest_truck", include_str!("../data/forest_truck.toml")),
     ("roadster", include_str!("../data/roadster.toml")),
     ("roadster_without_oil", include_str!("../data/roadster_without_oil.toml")),

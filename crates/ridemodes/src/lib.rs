@@ -23,7 +23,8 @@
 //!
 //! Everything is SI; pressures are absolute; axes are those of ISO 8855 (x forward, y left, z up); corners
 //! come in the order front left, front right, rear left, rear right. The equations are in
-//! [the theory text](https://docs.rs/crate/ridemodes/latest/source/docs/theory.md) of the crate.
+//! [the theory text](https://docs.rs/crate/ridemodes/latest/source/docs/theory.md) of the crate
+//! and its chapter on the network.
 //!
 //! Results are for engineering judgement, not a release to the road: a vehicle with changed suspension is
 //! proven by test, under local rules and by qualified people. Pressurised accumulators can injure; charge and

@@ -90,7 +90,7 @@ pub struct ClosedOff {
     pub accumulators: Vec<String>,
     /// Absolute pressure [Pa].
     pub pressure: f64,
-    /// Compliance of all that it holds [m³/Pa].
+    /// Compliance of all that it holds, the denominator of (N16) [m³/Pa].
     pub compliance: f64,
 }
 
@@ -231,7 +231,7 @@ impl Vehicle {
             spring_load,
             spring_preload,
             circuits: network.circuits.iter().map(Arc::<str>::to_string).collect(),
-            pressure: spec.circuits.0.values().map(|circuit| value(circuit.pressure)).collect(),
+            pressure: network.pressures.iter().map(|&pressure| value(pressure)).collect(),
             gas_volume,
             accumulators,
             slow_lines,
@@ -260,6 +260,7 @@ fn lines_apart(network: &Network, values: &NetworkValues<f64>, numbers: &[f64]) 
             let line = &network.lines[way.lines.start];
             let (a, b) = (fast[line.from], fast[line.to]);
             let (from, to) = (compliance(&fast, a), compliance(&fast, b));
+            // (N15) τ = R C_a C_b/(C_a + C_b)
             let series = if a == b || from + to == 0.0 { 0.0 } else { from * to / (from + to) };
             SlowLine { name: way.name.to_string(), resistance, time_constant: resistance * series }
         })
@@ -296,6 +297,29 @@ fn lines_apart(network: &Network, values: &NetworkValues<f64>, numbers: &[f64]) 
 }
 
 impl OperatingPoint {
+    /// What a linear result takes for granted here; `shut` where slow lines are.
+    pub(crate) fn assumptions(&self, shut: bool) -> Vec<String> {
+        let slow = self.slow_lines.iter().map(|line| {
+            let state = if shut { "is shut, as a slow line is to vibration" } else { "is slow and flows" };
+            format!("{} {state}; its time constant is {:.3} s with the wheels held", line.name, line.time_constant)
+        });
+        let mut closed: Vec<&String> = self.closed_off.iter().flat_map(|part| &part.lines).collect();
+        closed.sort_unstable();
+        closed.dedup();
+        let closed = closed.into_iter().map(|line| format!("{line} is closed; the oil behind it is trapped"));
+        let network = &self.vehicle.structure().network;
+        let spec = self.vehicle.spec();
+        let tables = CORNERS
+            .iter()
+            .filter_map(|&corner| spec.corner(corner))
+            .any(|corner| corner.damper.as_ref().is_some_and(|damper| damper.force.is_some()));
+        let linearised =
+            tables || network.lines.iter().any(|line| line.valve.is_some()) || *self.friction.as_array() != [0.0; 4];
+        let amplitudes = linearised
+            .then(|| "tables, valves and dry friction are taken as linear at the file's amplitudes".to_owned());
+        slow.chain(closed).chain(amplitudes).collect()
+    }
+
     /// The vehicle that stands there.
     pub fn vehicle(&self) -> &Vehicle {
         &self.vehicle

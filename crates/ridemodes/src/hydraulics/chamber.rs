@@ -19,7 +19,7 @@ impl Chamber {
         format!("{}_{}", self.corner.name(), if self.bump { "bump" } else { "rebound" })
     }
 
-    /// Pressed area at the wheel, +A·MR where bump squeezes the chamber, −A·MR where it expands it [m²].
+    /// Pressed area at the wheel (N2), +A·MR where bump squeezes the chamber, −A·MR where it expands it [m²].
     pub(crate) fn signed_area<T: Scalar>(self, spec: &Spec<Slot>, numbers: &[T]) -> T {
         self.cylinder_area(spec, numbers).map_or(
             T::zero(),

@@ -9,4 +9,5 @@ mod valve;
 
 pub(crate) use chamber::Chamber;
 pub(crate) use network::{Network, NetworkValues, Store, Way};
+pub(crate) use plan::pressure;
 pub(crate) use reduction::{Reduction, Row, reduce};

@@ -81,6 +81,8 @@ pub(crate) struct AccumulatorRef {
 #[derive(Debug, Default)]
 pub(crate) struct Network {
     pub circuits: Vec<Arc<str>>,
+    /// Design pressure of each circuit.
+    pub pressures: Vec<Slot>,
     pub nodes: Vec<Node>,
     pub lines: Vec<Line>,
     pub ways: Vec<Way>,
@@ -145,7 +147,7 @@ impl Network {
                 Store::Swell(slot) => return value(*slot),
                 Store::Gas(index) => return gas[*index].compliance,
             };
-            // C = V/β_e
+            // (N4) C = V/β_e
             volume * oil.compressibility(pressure)
         };
         let compliance = self
@@ -204,7 +206,7 @@ fn pipe_volume<T: Scalar>(pipe: &spec::Line<Slot>, numbers: &[T]) -> T {
     }
 }
 
-// Resistance and inertance: as given, or from geometry.
+// Resistance and inertance of (N5): as given, or from geometry.
 fn pipe_values<T: Scalar>(pipe: &spec::Line<Slot>, numbers: &[T], oil: &Oil<T>) -> (T, T) {
     let value = |slot: Slot| numbers[slot.0];
     let geometry = pipe.length.zip(pipe.bore).map(|(length, bore)| (value(length), value(bore)));

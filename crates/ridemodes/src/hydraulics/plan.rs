@@ -32,6 +32,34 @@ impl<'a> Fittings<'a> {
     }
 }
 
+/// Design pressure of a circuit: its own, or that of a circuit it is joined to by lines.
+pub(crate) fn pressure(spec: &Spec<Slot>, circuit: &str) -> Option<Slot> {
+    let circuit_of =
+        |place: &str| spec.nodes.0.get(place).map_or_else(|| place.to_owned(), |node| node.circuit.clone());
+    let mut joined = vec![circuit.to_owned()];
+    let mut next = 0;
+    while let Some(here) = joined.get(next).cloned() {
+        if let Some(pressure) = spec.circuits.0.get(&here).and_then(|circuit| circuit.pressure) {
+            return Some(pressure);
+        }
+        for line in spec.lines.0.values() {
+            let (from, to) = (circuit_of(&line.from), circuit_of(&line.to));
+            let other = if from == here {
+                to
+            } else if to == here {
+                from
+            } else {
+                continue;
+            };
+            if !joined.contains(&other) {
+                joined.push(other);
+            }
+        }
+        next += 1;
+    }
+    None
+}
+
 impl Network {
     /// Lays out the graph of a vehicle whose groups are written out: hubs and nodes by name, then each circuit's
     /// chambers and accumulators, then the lines between.
@@ -39,10 +67,12 @@ impl Network {
         let mut network = Self::default();
         let mut places: HashMap<&str, usize> = HashMap::new();
         for (name, circuit) in &spec.circuits.0 {
+            let Some(pressure) = pressure(spec, name) else { continue };
             let index = network.circuits.len();
             network.circuits.push(name.as_str().into());
+            network.pressures.push(pressure);
             let base = format!("circuits.{name}");
-            let node = network.node(&base, index, circuit.pressure);
+            let node = network.node(&base, index, pressure);
             network.hold(node, &format!("{base}.oil"), Store::Extra(circuit.volume));
             network.hold(node, &format!("{base}.swell"), Store::Swell(circuit.compliance));
             places.insert(name, node);

@@ -64,7 +64,7 @@ pub(crate) fn reduce(
         .enumerate()
         .flat_map(|(node, data)| data.chambers.iter().map(move |&chamber| (chamber, node)))
         .collect();
-    // Inflow of each pool over [lines | chambers]: −1 where a line leaves, +1 where it arrives.
+    // (N1, N3) inflow of each pool over [lines | chambers]: −1 where a line leaves, +1 where it arrives.
     let width = lines.len() + chambers.len();
     let inflow: Vec<Vec<f64>> = (0..pools.len())
         .map(|pool| {
@@ -80,7 +80,7 @@ pub(crate) fn reduce(
         })
         .collect();
     let is_compliant = |pool: usize| pools[pool].iter().any(|&node| compliant[node]);
-    // Volume balance of the pools without compliance, solved for as many line volumes.
+    // (N9) volume balance of the pools without compliance, solved for as many line volumes.
     let mut balance: Vec<Vec<f64>> =
         (0..pools.len()).filter(|&pool| !is_compliant(pool)).map(|pool| inflow[pool].clone()).collect();
     let mut order: Vec<usize> = (0..lines.len()).collect();
@@ -182,7 +182,7 @@ fn refuse_locked(
     Ok(())
 }
 
-// Null vectors of the pools' inflow over the kept lines: a spanning forest that takes lines without
+// (N10) null vectors of the pools' inflow over the kept lines: a spanning forest that takes lines without
 // inertance first, and one circulation for each line left over.
 fn circulations(pools: &[Pool], kept: &[usize], inertial: &[bool]) -> Vec<(usize, Vec<f64>)> {
     let mut rows: Vec<Vec<f64>> = pools.iter().map(|pool| pool.inflow.lines.clone()).collect();

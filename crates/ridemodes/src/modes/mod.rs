@@ -77,6 +77,8 @@ pub struct Modes {
     pub element_kinds: Vec<ElementKind>,
     /// Corner positions from the centre of gravity, x and y [m].
     pub positions: [[f64; 4]; 2],
+    /// What is taken for granted, e.g. that a slow line is shut.
+    pub assumptions: Vec<String>,
 }
 
 /// A pole with its shape over all coordinates, before it is labelled.
@@ -101,10 +103,8 @@ impl LinearSystem {
     pub fn modes_of(&self, kind: ModeKind) -> Result<Modes> {
         match kind {
             ModeKind::Undamped => {
-                let shut = self.with_slow_lines_shut()?;
-                let modes = undamped::solve(shut)?;
-                let labels = labels::undamped(shut, &modes);
-                Ok(Modes::new(shut, kind, modes, labels))
+                let (modes, labels) = self.undamped()?;
+                Ok(Modes::new(self, kind, modes, labels))
             }
             ModeKind::Locked => {
                 let locked = self.with_slow_lines_shut()?.locked()?;
@@ -113,15 +113,7 @@ impl LinearSystem {
                 Ok(Modes::new(&locked, kind, modes, labels))
             }
             ModeKind::Damped => {
-                let shut = self.with_slow_lines_shut()?;
-                let mut reference = undamped::solve(shut)?;
-                let names = labels::undamped(shut, &reference);
-                if !std::ptr::eq(shut, self) {
-                    // The volumes of shut lines stand still.
-                    for mode in &mut reference {
-                        mode.shape = self.spread(shut, &mode.shape);
-                    }
-                }
+                let (reference, names) = self.undamped()?;
                 let modes = damped::solve(self)?;
                 let labels = labels::damped(self, &modes, &reference, &names);
                 Ok(Modes::new(self, kind, modes, labels))
@@ -131,6 +123,19 @@ impl LinearSystem {
 }
 
 impl LinearSystem {
+    // Slow lines are shut: their volumes stand still.
+    fn undamped(&self) -> Result<(Vec<RawMode>, labels::Labels)> {
+        let shut = self.with_slow_lines_shut()?;
+        let mut modes = undamped::solve(shut)?;
+        let labels = labels::undamped(shut, &modes);
+        if !std::ptr::eq(shut, self) {
+            for mode in &mut modes {
+                mode.shape = self.spread(shut, &mode.shape);
+            }
+        }
+        Ok((modes, labels))
+    }
+
     // A shape over the coordinates of a system with fewer, over all of them.
     fn spread(&self, part: &Self, shape: &[Complex64]) -> Vec<Complex64> {
         let place = |name: &String| part.coordinates().iter().position(|known| known == name);
@@ -165,6 +170,7 @@ impl Modes {
             elements: system.elements().iter().map(|element| element.name.to_string()).collect(),
             element_kinds: system.elements().iter().map(|element| element.kind).collect(),
             positions: [*system.positions().0.as_array(), *system.positions().1.as_array()],
+            assumptions: system.point().assumptions(kind != ModeKind::Damped),
         };
         for (i, mode) in modes.iter().enumerate() {
             let kinetic = shares::kinetic(system, &mode.shape);

@@ -24,7 +24,7 @@ impl Modes {
         if self.unclear.iter().any(|&unclear| unclear) {
             table = table.note("~ near tie: the motions are mixed so evenly that labels could be exchanged");
         }
-        table
+        self.assumptions.iter().fold(table, |table, assumption| table.note(assumption.clone()))
     }
 
     /// Where a mode's strain energy and dissipation are, the largest first; parts below 0.1 % are left out.

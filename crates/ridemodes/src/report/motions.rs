@@ -50,7 +50,7 @@ impl Motions {
         for warning in &self.warnings {
             table = table.note(format!("warning: {warning}"));
         }
-        table
+        self.assumptions.iter().fold(table, |table, assumption| table.note(assumption.clone()))
     }
 
     /// Couplings of one motion with another.
@@ -118,7 +118,9 @@ impl LinearSystem {
             cells.extend((0..4).map(|j| fixed(coupling[(i, j)] * 1e-3, 3)));
             table.row(cells);
         }
-        Ok(table.note("quasi-static: oil free to flow, gas by its exponent"))
+        let table = table.note("quasi-static: oil free to flow, gas by its exponent");
+        let assumptions = self.point().assumptions(true);
+        Ok(assumptions.into_iter().fold(table, Table::note))
     }
 
     /// The system in words.
@@ -137,7 +139,9 @@ impl LinearSystem {
                 cell(self.stiffness()[(i, i)]),
             ]);
         }
-        table.note("diagonals, SI; gravity moment of the leaned body left out (classical seven degrees of freedom)")
+        let table = table
+            .note("diagonals, SI; gravity moment of the leaned body left out (classical seven degrees of freedom)");
+        self.point().assumptions(false).into_iter().fold(table, Table::note)
     }
 }
 

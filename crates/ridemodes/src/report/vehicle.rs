@@ -43,6 +43,7 @@ impl OperatingPoint {
         if !self.circuits.is_empty() {
             tables.push(self.circuit_table());
         }
+        tables.extend([self.slow_line_table(), self.closed_off_table()].into_iter().flatten());
         Tables(tables)
     }
 
@@ -80,10 +81,60 @@ impl OperatingPoint {
             fixed(degrees(self.attitude[2]), 2),
             fixed(self.temperature - 273.15, 1)
         ));
+        if *self.friction.as_array() != [0.0; 4] {
+            let bands: Vec<String> = CORNERS
+                .iter()
+                .map(|&corner| {
+                    format!(
+                        "{} ± {} N",
+                        CORNER_NAMES[corner.index()].replace('_', " "),
+                        fixed(self.friction[corner], 0)
+                    )
+                })
+                .collect();
+            table = table.note(format!("dry friction holds each corner within its band: {}", bands.join(", ")));
+        }
         for warning in &self.warnings {
             table = table.note(format!("warning: {warning}"));
         }
         table
+    }
+
+    /// Lines that only balance slowly; none, no table.
+    pub fn slow_line_table(&self) -> Option<Table> {
+        let mut table = Table::new("Slow lines", &["line", "resistance bar·s/L", "time constant s"]);
+        for line in &self.slow_lines {
+            table.row([line.name.clone(), fixed(line.resistance * 1e-8, 2), fixed(line.time_constant, 3)]);
+        }
+        let table =
+            table.note("open for a standing vehicle, shut for coupling, motions and undamped modes; wheels held");
+        (!self.slow_lines.is_empty()).then_some(table)
+    }
+
+    /// What closed lines have cut off; none, no table.
+    pub fn closed_off_table(&self) -> Option<Table> {
+        let mut table = Table::new(
+            "Oil behind closed lines",
+            &["closed", "oil at", "accumulators", "bar abs", "bar gauge", "gives cm³/bar"],
+        );
+        let list = |names: &[String]| if names.is_empty() { "–".to_owned() } else { names.join(", ") };
+        for part in &self.closed_off {
+            table.row([
+                list(&part.lines),
+                match part.nodes.as_slice() {
+                    [first, rest @ ..] if !rest.is_empty() => format!("{first} and {} more nodes", rest.len()),
+                    nodes => list(nodes),
+                },
+                list(&part.accumulators),
+                fixed(part.pressure / 1e5, 2),
+                fixed((part.pressure - self.atmosphere) / 1e5, 2),
+                fixed(part.compliance * 1e11, 4),
+            ]);
+        }
+        let table = table.note(
+            "oil without an accumulator is trapped: it holds with its own compressibility and the swell of hoses",
+        );
+        (!self.closed_off.is_empty()).then_some(table)
     }
 
     /// Pressure and gas of each circuit.

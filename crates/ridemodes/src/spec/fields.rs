@@ -261,8 +261,8 @@ tables! {
 
     /// Oil circuit at one pressure: chambers and accumulators joined at a hub.
     Circuit {
-        /// System pressure at the design condition.
-        pressure: N = pressure,
+        /// System pressure at the design condition; left out, that of the circuit it is joined to by lines.
+        pressure: Option<N> = maybe_pressure,
         /// Oil volume at the hub beside that of chambers and lines.
         volume: N = number("m^3", NOT_NEGATIVE, 0.0),
         /// Swell of hoses at the hub: volume per pressure.

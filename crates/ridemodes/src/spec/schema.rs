@@ -228,7 +228,7 @@ impl<'de, N: serde::de::DeserializeOwned> Deserialize<'de> for Flag<N> {
 ///
 /// Each field is `name: Type = kind`, with kinds
 /// `number("unit", bounds)`, `number("unit", bounds, default)`, `optional("unit", bounds)`,
-/// `pressure`, `pressure(default)`, `list("unit", bounds)`, `flag`, `count(largest)`, `text`, `label`, `choice(Enum)`, `must_choose(Enum)`, `table(Struct)`,
+/// `pressure`, `pressure(default)`, `maybe_pressure`, `list("unit", bounds)`, `flag`, `count(largest)`, `text`, `label`, `choice(Enum)`, `must_choose(Enum)`, `table(Struct)`,
 /// `maybe(Struct)`, `filled(Struct)`, `named(Struct)`, `overrides`.
 macro_rules! tables {
     ($( $(#[doc = $doc:literal])+ $name:ident { $( $(#[doc = $meaning:literal])+ $field:ident: $type:ty = $kind:ident $(($($args:tt)*))?, )+ } )+) => { $(
@@ -261,6 +261,7 @@ macro_rules! tables {
     (@kind number ($unit:literal, $bounds:expr, $default:expr)) => { tables!(@number $unit, $bounds, false, Presence::Default($default)) };
     (@kind optional ($unit:literal, $bounds:expr)) => { tables!(@number $unit, $bounds, false, Presence::Optional) };
     (@kind pressure) => { tables!(@number "Pa", Bounds::POSITIVE, true, Presence::Required) };
+    (@kind maybe_pressure) => { tables!(@number "Pa", Bounds::POSITIVE, true, Presence::Optional) };
     (@kind pressure ($default:expr)) => { tables!(@number "Pa", Bounds::POSITIVE, true, Presence::Default($default)) };
     (@kind list ($unit:literal, $bounds:expr)) => { Kind::List { unit: $unit, bounds: $bounds } };
     (@kind flag) => { Kind::Flag };

@@ -108,7 +108,7 @@ impl Canonical {
         })
     }
 
-    /// Number of states.
+    /// Number of states (N11).
     pub(crate) fn states(&self) -> usize {
         2 * self.second_names.len() - self.second_loops + self.first_names.len() - self.first_loops
     }

@@ -1,6 +1,6 @@
 //! What wheel travel alone feels: the quasi-static limit and the dynamic coupling of the oil.
 
-use nalgebra::{DMatrix, Matrix4};
+use nalgebra::{DMatrix, DVector, Matrix4};
 use ndarray::Array3;
 use num_complex::Complex64;
 
@@ -47,7 +47,7 @@ impl QuasiStatic {
             DMatrix::from_fn(rows.len(), columns.len(), |i, j| matrix[(rows[i], columns[j])])
         };
         let held_rows: Vec<usize> = held.iter().map(|i| i + 4).collect();
-        // K_hh X_h = −K_hδ
+        // (N14) K_hh X_h = −K_hδ
         if !held.is_empty() {
             let own = block(&stiffness, &held_rows, &held_rows);
             let factor = scaled_cholesky(&own).ok_or_else(|| Error::Singular {
@@ -113,24 +113,55 @@ impl QuasiStatic {
         total
     }
 
-    /// dX of the inner coordinates (inner × 4) from K_hh dX = −(dK_hδ + dK_hh X); `None` where there are none.
+    /// dX of the inner coordinates (inner × 4); `None` where there are none.
+    ///
+    /// K_vv dX = −(dK_vδ + dK_vv X), and along each circulation d, where K_vv vanishes, the least dissipation
+    /// dᵀC_vv dX = −dᵀ(dC_vδ + dC_vv X). Both at once: (K_vv + Σ α w wᵀ) dX with w = C_vv d has the same solution for
+    /// any α, since dᵀK_vv = 0.
     pub(crate) fn derivative(&self, system: &LinearSystem, elements: &[Element<Dual>]) -> Option<DMatrix<f64>> {
         let inner = system.coordinates.len() - MECHANICAL;
-        let own = sum(system, |element| element.stiffness).view((4, 4), (inner, inner)).into_owned();
-        // d(Σ k g (g·[I; X])) at fixed X
-        let mut right = DMatrix::zeros(inner, 4);
-        for element in elements.iter().filter(|e| e.kind.is_hydraulic() || e.kind.is_conventional()) {
-            let travel = self.follow(element.row[3..].iter().map(|g| g.value));
-            let turned = self.follow(element.row[3..].iter().map(|g| g.derivative));
-            let k = element.stiffness;
-            for (i, g) in element.row[MECHANICAL..].iter().enumerate() {
-                for j in 0..4 {
-                    right[(i, j)] +=
-                        (k.derivative * g.value + k.value * g.derivative) * travel[j] + k.value * g.value * turned[j];
+        if inner == 0 {
+            return None;
+        }
+        let block = |scalar: fn(&Element) -> f64| sum(system, scalar).view((4, 4), (inner, inner)).into_owned();
+        let mut own = block(|element| element.stiffness);
+        let damping = block(|element| element.damping);
+        // d(Σ s g (g·[I; X])) at fixed X
+        let change = |scalar: fn(&Element<Dual>) -> Dual| {
+            let mut right = DMatrix::zeros(inner, 4);
+            for element in elements.iter().filter(|e| e.kind.is_hydraulic() || e.kind.is_conventional()) {
+                let travel = self.follow(element.row[3..].iter().map(|g| g.value));
+                let turned = self.follow(element.row[3..].iter().map(|g| g.derivative));
+                let s = scalar(element);
+                for (i, g) in element.row[MECHANICAL..].iter().enumerate() {
+                    for j in 0..4 {
+                        right[(i, j)] += (s.derivative * g.value + s.value * g.derivative) * travel[j]
+                            + s.value * g.value * turned[j];
+                    }
                 }
             }
+            right
+        };
+        let mut right = change(|element| element.stiffness);
+        if !system.circulations.is_empty() {
+            let resisting = change(|element| element.damping);
+            let largest = own.diagonal().amax();
+            for (free, shape) in &system.circulations {
+                let circulation = DVector::from_column_slice(&shape[MECHANICAL..]);
+                let mut held = &damping * &circulation;
+                let mut moved = circulation.transpose() * &resisting;
+                if held.dot(&circulation) == 0.0 {
+                    // Without resistance the tree's volumes are kept.
+                    held = DVector::zeros(inner);
+                    held[free - MECHANICAL] = 1.0;
+                    moved.fill(0.0);
+                }
+                let weight = largest / held.amax().powi(2);
+                own += &held * held.transpose() * weight;
+                right += &held * moved * weight;
+            }
         }
-        (inner > 0).then(|| scaled_cholesky(&own).map(|factor| -factor.solve(&right)))?
+        scaled_cholesky(&own).map(|factor| -factor.solve(&right))
     }
 }
 
@@ -156,7 +187,7 @@ fn add(total: &mut DMatrix<f64>, element: &Element, scalar: f64) {
 }
 
 impl LinearSystem {
-    /// Quasi-static coupling of the oil at the wheels (4 × 4) [N/m], K_hyd(0): the limit of
+    /// Quasi-static coupling of the oil at the wheels (4 × 4) [N/m], K_hyd(0) of (N13): the limit of
     /// [`dynamic_coupling`](Self::dynamic_coupling) at vanishing frequency.
     ///
     /// Slow lines are shut.
@@ -187,7 +218,7 @@ impl LinearSystem {
 
 /// The oil's M, C and K over wheel travel and volumes.
 ///
-/// D = A_δδ − A_δv A_vv⁻¹ A_vδ with A = s²M + sC + K holds for volumes counted from any multiple of the
+/// (N12) D = A_δδ − A_δv A_vv⁻¹ A_vδ with A = s²M + sC + K holds for volumes counted from any multiple of the
 /// travel, v = X δ + w. From X = 0 the oil is held, from the quasi-static X it follows: the first loses
 /// digits at low frequency, the second at high, so at each frequency the smaller A_δδ is taken.
 struct OilForm {

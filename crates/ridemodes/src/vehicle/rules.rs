@@ -4,6 +4,7 @@ use serde_json::Value;
 
 use crate::axes::CORNERS;
 use crate::error::Violation;
+use crate::hydraulics::pressure;
 use crate::spec::{Parameter, Slot, Spec, Tree, chamber, nearest};
 
 mod parts;
@@ -101,6 +102,13 @@ pub(super) fn connections(spec: &Spec<Slot>) -> Vec<Violation> {
     }
     if !spec.circuits.0.is_empty() && spec.oil.is_none() {
         violations.push(Violation::new("oil", "", "is missing").hint("circuits need oil"));
+    }
+    for name in spec.circuits.0.keys().filter(|name| pressure(spec, name).is_none()) {
+        violations.push(
+            Violation::new(format!("circuits.{name}.pressure"), "", "is missing")
+                .unit("Pa")
+                .hint("system pressure at the design condition, of this circuit or of one that a line joins it to"),
+        );
     }
     violations.extend(places(spec));
     violations

@@ -2,6 +2,7 @@
 
 use crate::axes::CORNERS;
 use crate::error::Violation;
+use crate::hydraulics::pressure;
 use crate::spec::{CylinderKind, Damper, Line, Parameter, Slot, Spec, Valve, ValveKind};
 
 /// Checks every part.
@@ -227,11 +228,11 @@ impl Rules<'_> {
 
     // Oil flows between circuits that are joined: at rest they have one pressure.
     fn joined(&mut self, spec: &Spec<Slot>, from: &str, to: &str, closed: Slot) {
-        let pressure = |name: &str| {
+        let own = |name: &str| {
             let circuit = spec.nodes.0.get(name).map_or(name, |node| &node.circuit);
-            Some(spec.circuits.0.get(circuit)?.pressure)
+            pressure(spec, circuit)
         };
-        let (Some(a), Some(b)) = (pressure(from), pressure(to)) else { return };
+        let (Some(a), Some(b)) = (own(from), own(to)) else { return };
         if self.value(closed) != 1.0 && (self.value(a) - self.value(b)).abs() > 1e-9 * self.value(a).abs() {
             let rule = format!("joins circuits at {} and {} Pa", self.value(a), self.value(b));
             self.beside(
