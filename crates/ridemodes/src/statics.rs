@@ -194,6 +194,9 @@ impl Vehicle {
                 warnings
                     .push(format!("{name}: the corner load is {:.0} N; the body would lift off", corner_load[corner]));
             }
+            if spec.corner(corner).is_some_and(|corner| value(corner.tyre.rate) == 0.0) {
+                warnings.push(format!("{name}: the tyre has no rate, as off the ground; the loads are those on it"));
+            }
             if spring(corner).is_none() {
                 if spring_load[corner].abs() > 1e-6 * corner_load[corner].abs() {
                     warnings.push(format!(

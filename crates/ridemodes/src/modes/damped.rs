@@ -11,6 +11,7 @@ use num_complex::Complex64;
 use super::RawMode;
 use super::undamped::{elastic, whiten};
 use crate::error::{Error, Result};
+use crate::numerics::solve_symmetric;
 use crate::system::{Canonical, LinearSystem};
 
 /// Poles in the closed upper half-plane with their shapes, by ascending |λ|.
@@ -112,7 +113,7 @@ fn refined(system: &LinearSystem, mode: &RawMode, reach: f64) -> Complex64 {
 }
 
 /// Residual of a shape, against the size of its terms, that is left as it is.
-const CLEAN: f64 = 1e-13;
+const CLEAN: f64 = 5e-13;
 
 // Inverse iteration (λ²M + λC + K)ψ' = (2λM + C)ψ: the eigensolver's shapes carry its rounding, relative to the
 // largest pole; beside stiff oil that is seen. With this right-hand side a shape keeps apart from those of nearly
@@ -123,17 +124,16 @@ fn polish(system: &LinearSystem, mode: &mut RawMode, reach: f64) {
     for plain in [false, true] {
         let (pole, size) = (mode.pole, mode.pole.norm());
         // Every coordinate in its own unit, in which the terms are of size 1.
-        let unit: Vec<f64> =
-            (0..n).map(|i| (size * (size * mass[(i, i)] + damping[(i, i)]) + stiffness[(i, i)].abs()).sqrt()).collect();
-        if unit.contains(&0.0) {
+        let square = |i: usize| size * (size * mass[(i, i)] + damping[(i, i)]) + stiffness[(i, i)].abs();
+        let unit: Vec<f64> = (0..n).map(|i| 1.0 / square(i).sqrt()).collect();
+        if !unit.iter().all(|unit| unit.is_finite()) {
             return; // a circulation without inertance and resistance
         }
-        let form = |i: usize, j: usize| {
-            (pole * (pole * mass[(i, j)] + damping[(i, j)]) + stiffness[(i, j)]) / (unit[i] * unit[j])
-        };
-        let dynamic = DMatrix::from_fn(n, n, form);
+        let dynamic = DMatrix::from_fn(n, n, |i, j| {
+            (pole * (pole * mass[(i, j)] + damping[(i, j)]) + stiffness[(i, j)]) * (unit[i] * unit[j])
+        });
         let residual = |x: &DVector<Complex64>| (&dynamic * x).norm() / x.norm();
-        let start = DVector::from_fn(n, |i, _| mode.shape[i] * unit[i]);
+        let start = DVector::from_fn(n, |i, _| mode.shape[i] / unit[i]);
         let before = residual(&start);
         if before <= CLEAN {
             return;
@@ -142,17 +142,22 @@ fn polish(system: &LinearSystem, mode: &mut RawMode, reach: f64) {
             if plain {
                 return start[i];
             }
-            (0..n).map(|j| (pole * 2.0 * mass[(i, j)] + damping[(i, j)]) * mode.shape[j]).sum::<Complex64>() / unit[i]
+            (0..n).map(|j| (pole * 2.0 * mass[(i, j)] + damping[(i, j)]) * mode.shape[j]).sum::<Complex64>() * unit[i]
         });
         // At a pole exact to the last digit the matrix may come out singular; next to it it is not.
         let near = || &dynamic + DMatrix::from_diagonal_element(n, n, Complex64::from(4.0 * f64::EPSILON));
-        let solved = dynamic.clone().lu().solve(&right).or_else(|| near().lu().solve(&right));
-        let Some(better) = solved else { return };
-        if !(better.norm().is_finite() && residual(&better) < before) {
+        let improves = |x: &DVector<Complex64>| x.norm().is_finite() && residual(x) < before;
+        let better = Some(solve_symmetric(dynamic.clone(), &right))
+            .filter(|x| x.norm().is_finite() && residual(x) <= CLEAN.max(1e-3 * before))
+            .or_else(|| dynamic.clone().lu().solve(&right).filter(improves))
+            .or_else(|| near().lu().solve(&right).filter(improves));
+        let Some(better) = better else { return };
+        let scale = 1.0 / better.norm();
+        mode.shape = (0..n).map(|i| better[i] * unit[i] * scale).collect();
+        mode.pole = refined(system, mode, reach);
+        if residual(&better) <= CLEAN {
             return;
         }
-        mode.shape = (0..n).map(|i| better[i] / (unit[i] * better.norm())).collect();
-        mode.pole = refined(system, mode, reach);
     }
 }
 

@@ -4,8 +4,10 @@ mod assignment;
 mod cholesky;
 mod dual;
 mod scalar;
+mod symmetric;
 
 pub(crate) use assignment::best_assignment;
 pub(crate) use cholesky::rank_revealing;
 pub use dual::Dual;
 pub use scalar::Scalar;
+pub(crate) use symmetric::solve_symmetric;

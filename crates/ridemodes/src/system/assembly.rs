@@ -29,7 +29,7 @@ pub(crate) fn assemble<T: Scalar>(structure: &Structure, numbers: &[T], slow: Sl
     let oil = network.values(spec, numbers);
     // Branches on a value are decided in f64.
     let shut = slow == SlowLines::Shut;
-    let open: Vec<bool> = oil.lines.iter().map(|line| !line.closed && !(shut && line.slow)).collect();
+    let open: Vec<bool> = oil.lines.iter().map(|line| !(line.closed || shut && line.slow)).collect();
     let ideal: Vec<bool> = oil.lines.iter().map(|line| line.is_ideal()).collect();
     let inertial: Vec<bool> = oil.lines.iter().map(|line| line.inertance.value() > 0.0).collect();
     let compliant: Vec<bool> =
