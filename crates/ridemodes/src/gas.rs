@@ -1,53 +1,130 @@
-//! Gas in an accumulator.
+//! Gas in an accumulator: laws of a constant amount, generic in the scalar.
+
+mod nitrogen;
 
 use crate::numerics::Scalar;
+use crate::spec::GasKind;
 
-/// Gas of one accumulator at rest in the system.
-#[derive(Clone, Copy, Debug, PartialEq)]
-pub(crate) struct GasState<T> {
-    /// Gas volume at system pressure [m³].
-    pub volume: T,
-    /// Gas volume at precharge, empty of oil [m³].
-    pub full: T,
-    /// Compliance dV/dp of the gas [m³/Pa]; zero when the accumulator is empty of oil.
-    pub compliance: T,
-    /// Pressure at which the accumulator runs empty of oil at this temperature [Pa].
-    pub empty_pressure: T,
-}
+pub(crate) use nitrogen::Nitrogen;
 
 /// Which gas volume is known.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub(crate) enum Fill<T> {
-    /// The volume at precharge.
+    /// The volume at precharge, empty of oil.
     Precharge(T),
-    /// The volume at system pressure.
+    /// The volume at design pressure and temperature.
     Rest(T),
 }
 
-/// An ideal gas of constant amount, charged to `precharge` at `precharge_temperature`, now at
-/// `pressure` (absolute) and `temperature`, changing state with the polytropic `exponent`.
-///
-/// `empty` decides the branch: whether the pressure is below that of the charge.
-pub(crate) fn ideal<T: Scalar>(
-    fill: Fill<T>,
-    precharge: T,
-    precharge_temperature: T,
-    exponent: T,
-    pressure: T,
-    temperature: T,
-    empty: bool,
-) -> GasState<T> {
-    // p₀ T/T₀: the charge at working temperature
-    let empty_pressure = precharge * temperature / precharge_temperature;
-    // V_g = V₀ (p₀/p)(T/T₀)
-    let share = if empty { T::one() } else { empty_pressure / pressure };
-    let (volume, full) = match fill {
-        Fill::Precharge(full) => (full * share, full),
-        Fill::Rest(volume) => (volume, volume / share),
-    };
-    // C = V_g/(κ p)
-    let compliance = if empty { T::zero() } else { volume / (exponent * pressure) };
-    GasState { volume, full, compliance, empty_pressure }
+/// A constant amount of gas behind a separator that leaves it no more than `full`.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub(crate) struct Gas<T> {
+    pub kind: GasKind,
+    /// Volume when empty of oil [m³].
+    pub full: T,
+    /// Polytropic exponent of fast changes, of an ideal gas.
+    pub exponent: T,
+    /// Amount: p V/T of an ideal gas [Pa·m³/K], the mass of nitrogen [kg].
+    pub amount: T,
+}
+
+/// A gas at rest.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub(crate) struct GasState<T> {
+    /// Volume [m³].
+    pub volume: T,
+    /// Whether the accumulator is empty of oil, and rigid.
+    pub empty: bool,
+}
+
+impl<T: Scalar> Gas<T> {
+    /// The gas of an accumulator charged to `precharge` (absolute) at `charged_at`; of its two volumes `fill` is known,
+    /// the other follows at the design `pressure` and `temperature`.
+    pub(crate) fn charged(
+        kind: GasKind,
+        fill: Fill<T>,
+        precharge: T,
+        charged_at: T,
+        exponent: T,
+        [pressure, temperature]: [T; 2],
+    ) -> Self {
+        // Amount per volume at the charge, and at rest.
+        let per_volume = |p: T, t: T| match kind {
+            GasKind::Ideal => p / t,
+            GasKind::Nitrogen => Nitrogen::density(p, t),
+        };
+        let charge = per_volume(precharge, charged_at);
+        let full = match fill {
+            Fill::Precharge(full) => full,
+            Fill::Rest(volume) => {
+                let share = per_volume(pressure, temperature) / charge;
+                // Below the charge's pressure the gas fills the accumulator.
+                if share.value() < 1.0 { volume } else { volume * share }
+            }
+        };
+        Self { kind, full, exponent, amount: charge * full }
+    }
+
+    /// The gas in plain numbers.
+    pub(crate) fn plain(&self) -> Gas<f64> {
+        Gas { kind: self.kind, full: self.full.value(), exponent: self.exponent.value(), amount: self.amount.value() }
+    }
+
+    /// Pressure at which it fills the accumulator, p₀ T/T₀ of an ideal gas [Pa].
+    pub(crate) fn empty_pressure(&self, temperature: T) -> T {
+        match self.kind {
+            GasKind::Ideal => self.amount * temperature / self.full,
+            GasKind::Nitrogen => Nitrogen::pressure(self.amount / self.full, temperature),
+        }
+    }
+
+    /// The gas at a pressure and temperature.
+    pub(crate) fn at(&self, pressure: T, temperature: T) -> GasState<T> {
+        if self.amount.value() <= 0.0 {
+            // No charge: oil fills it.
+            return GasState { volume: T::zero(), empty: true };
+        }
+        // V_g = V₀ (p₀/p)(T/T₀), V₀ ρ(p₀, T₀)/ρ(p, T)
+        let volume = match self.kind {
+            GasKind::Ideal => self.amount * temperature / pressure,
+            GasKind::Nitrogen => self.amount / Nitrogen::density(pressure, temperature),
+        };
+        let empty = volume.value() > self.full.value();
+        GasState { volume: if empty { self.full } else { volume }, empty }
+    }
+
+    /// The gas at a pressure it came to without heat exchange from a state at rest.
+    pub(crate) fn after(&self, start: GasState<T>, [from, temperature]: [T; 2], pressure: T) -> GasState<T> {
+        if self.amount.value() <= 0.0 {
+            return start;
+        }
+        // An accumulator that was empty begins to move at the pressure of its charge.
+        let from = if start.empty { self.empty_pressure(temperature) } else { from };
+        let volume = match self.kind {
+            // V (p/p_start)^(−1/κ)
+            GasKind::Ideal => start.volume * ((from / pressure).ln() / self.exponent).exp(),
+            GasKind::Nitrogen => self.amount / Nitrogen::isentrope(self.amount / start.volume, temperature, pressure),
+        };
+        let empty = volume.value() > self.full.value();
+        GasState { volume: if empty { self.full } else { volume }, empty }
+    }
+
+    /// Exponents n of C = V/(n p), slow (isothermal) and fast.
+    pub(crate) fn exponents(&self, state: GasState<T>, temperature: T) -> [T; 2] {
+        match self.kind {
+            GasKind::Ideal => [T::one(), self.exponent],
+            GasKind::Nitrogen => Nitrogen::exponents(self.amount / state.volume, temperature),
+        }
+    }
+
+    /// Compliances dV/dp of the gas, slow and fast [m³/Pa]; none when the accumulator is empty of oil.
+    pub(crate) fn compliances(&self, state: GasState<T>, [pressure, temperature]: [T; 2]) -> [T; 2] {
+        if state.empty {
+            return [T::zero(); 2];
+        }
+        // C = V_g/(κ p)
+        self.exponents(state, temperature).map(|exponent| state.volume / (exponent * pressure))
+    }
 }
 
 #[cfg(test)]
@@ -55,29 +132,50 @@ mod tests {
     use super::*;
     use approx::assert_relative_eq;
 
+    fn ideal(fill: Fill<f64>, precharge: f64, exponent: f64, pressure: f64) -> Gas<f64> {
+        Gas::charged(GasKind::Ideal, fill, precharge, 293.15, exponent, [pressure, 293.15])
+    }
+
     // Ideal polytropic gas spring k = n p A²/V: n 1.3, 9 MPa, 0.6 L, 12 cm² gives 28 080 N/m
     // (worked by hand).
     #[test]
     fn gas_spring_rate() {
-        let gas = ideal(Fill::Rest(0.6e-3), 4e6, 293.15, 1.3, 9e6, 293.15, false);
-        assert_relative_eq!(12e-4 * 12e-4 / gas.compliance, 28_080.0, max_relative = 1e-12);
+        let gas = ideal(Fill::Rest(0.6e-3), 4e6, 1.3, 9e6);
+        let [_, fast] = gas.compliances(gas.at(9e6, 293.15), [9e6, 293.15]);
+        assert_relative_eq!(12e-4 * 12e-4 / fast, 28_080.0, max_relative = 1e-12);
         assert_relative_eq!(gas.full, 0.6e-3 * 9.0 / 4.0, max_relative = 1e-14);
     }
 
     #[test]
-    fn compliance_is_the_slope_of_the_polytrope() {
-        // V = V_g (p_s/p)^(1/κ) about the state at rest.
-        let (kappa, p) = (1.4, 3.2e6);
-        let gas = ideal(Fill::Precharge(1e-3), 2e6, 280.0, kappa, p, 310.0, false);
-        let volume = |q: f64| gas.volume * (p / q).powf(1.0 / kappa);
-        let h = 10.0;
-        assert_relative_eq!(-(volume(p + h) - volume(p - h)) / (2.0 * h), gas.compliance, max_relative = 1e-8);
-        assert_relative_eq!(gas.volume, 1e-3 * (2.0 / 3.2) * (310.0 / 280.0), max_relative = 1e-14);
+    fn compliance_is_the_slope_of_the_law() {
+        for kind in [GasKind::Ideal, GasKind::Nitrogen] {
+            let (p, t, h) = (12.0e6, 310.0, 200.0);
+            let gas = Gas::charged(kind, Fill::Precharge(1e-3), 8e6, 280.0, 1.4, [p, t]);
+            let start = gas.at(p, t);
+            let [slow, fast] = gas.compliances(start, [p, t]);
+            let slope = |law: &dyn Fn(f64) -> f64| -(law(p + h) - law(p - h)) / (2.0 * h);
+            assert_relative_eq!(slope(&|q| gas.at(q, t).volume), slow, max_relative = 1e-8);
+            assert_relative_eq!(slope(&|q| gas.after(start, [p, t], q).volume), fast, max_relative = 1e-8);
+        }
+    }
+
+    #[test]
+    fn nitrogen_becomes_an_ideal_gas_when_thin() {
+        let (p, t) = (3e4, 300.0);
+        let law = |kind| Gas::charged(kind, Fill::Precharge(1e-3), 1e4, 280.0, 1.3995, [p, t]);
+        let (real, ideal) = (law(GasKind::Nitrogen), law(GasKind::Ideal));
+        assert_relative_eq!(real.at(p, t).volume, ideal.at(p, t).volume, max_relative = 1e-4);
+        let [slow, fast] = real.exponents(real.at(p, t), t);
+        assert_relative_eq!(slow, 1.0, max_relative = 1e-3);
+        assert_relative_eq!(fast, 1.4, max_relative = 1e-3);
     }
 
     #[test]
     fn an_empty_accumulator_is_rigid() {
-        let gas = ideal(Fill::Precharge(1e-3), 4e6, 293.15, 1.4, 3e6, 293.15, true);
-        assert_eq!((gas.volume, gas.compliance), (1e-3, 0.0));
+        let gas = ideal(Fill::Precharge(1e-3), 4e6, 1.4, 3e6);
+        let state = gas.at(3e6, 293.15);
+        assert_eq!((state.volume, state.empty), (1e-3, true));
+        assert_eq!(gas.compliances(state, [3e6, 293.15]), [0.0; 2]);
+        assert_relative_eq!(gas.empty_pressure(293.15), 4e6, max_relative = 1e-14);
     }
 }

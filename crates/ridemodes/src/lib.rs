@@ -64,7 +64,7 @@ pub use modes::{MOTION_SHARE_NAMES, ModeKind, Modes, SHARE_NAMES};
 pub use numerics::{Dual, Scalar};
 pub use report::{CAUTION, Table, Tables};
 pub use sensitivities::Sensitivities;
-pub use statics::{AccumulatorState, ClosedOff, OperatingPoint, SlowLine};
+pub use statics::{AccumulatorState, ClosedOff, Condition, Fault, Limit, OperatingPoint, Payload, SlowLine};
 pub use sweep::Sweep;
 pub use system::{Element, ElementKind, LinearSystem, StateSpace};
 pub use units::{STANDARD_ATMOSPHERE, STANDARD_GRAVITY};

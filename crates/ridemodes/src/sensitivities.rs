@@ -60,7 +60,9 @@ impl LinearSystem {
     /// # Errors
     /// As [`modes`](Self::modes) and [`motions`](Self::motions).
     pub fn sensitivities(&self) -> Result<Sensitivities> {
-        let vehicle = self.point().vehicle();
+        // A fault has changed what the numbers are.
+        let vehicle = &self.point().car;
+        let payload = &self.point().condition.payload;
         let structure = vehicle.structure();
         let numbers = vehicle.numbers();
         let modes = self.modes()?;
@@ -95,12 +97,14 @@ impl LinearSystem {
                 continue;
             }
             seeded[slot] = Dual::variable(numbers[slot]);
-            let change = assemble(structure, &seeded, SlowLines::Flow)?;
+            let at = self.point().at(&seeded);
+            let assemble = |slow| assemble(structure, &seeded, &at, payload, slow, self.has_gravity());
+            let change = assemble(SlowLines::Flow)?;
             result.differentiate_modes(place, &change, &slopes);
             if std::ptr::eq(shut, self) {
                 result.differentiate_motions(place, &change, self, still);
             } else {
-                let change = assemble(structure, &seeded, SlowLines::Shut)?;
+                let change = assemble(SlowLines::Shut)?;
                 result.differentiate_motions(place, &change, shut, still);
             }
             seeded[slot] = Dual::constant(numbers[slot]);

@@ -19,14 +19,15 @@ impl Chamber {
         format!("{}_{}", self.corner.name(), if self.bump { "bump" } else { "rebound" })
     }
 
-    /// Pressed area at the wheel (N2), +A·MR where bump squeezes the chamber, −A·MR where it expands it [m²].
-    pub(crate) fn signed_area<T: Scalar>(self, spec: &Spec<Slot>, numbers: &[T]) -> T {
-        self.cylinder_area(spec, numbers).map_or(
-            T::zero(),
-            |(area, ratio)| {
-                if self.bump { area * ratio } else { -(area * ratio) }
-            },
-        )
+    /// Pressed area at the wheel (N2) at a deflection, +A·MR where bump squeezes the chamber, −A·MR where it expands
+    /// it [m²].
+    pub(crate) fn signed_area<T: Scalar>(self, spec: &Spec<Slot>, numbers: &[T], deflection: T) -> T {
+        let cylinder = spec.corner(self.corner).and_then(|corner| corner.cylinder.as_ref());
+        let slope = cylinder.map_or(T::zero(), |cylinder| numbers[cylinder.motion_ratio_slope.0]);
+        self.cylinder_area(spec, numbers).map_or(T::zero(), |(area, ratio)| {
+            let at_wheel = area * (ratio + slope * deflection);
+            if self.bump { at_wheel } else { -at_wheel }
+        })
     }
 
     /// Oil in the chamber with the piston in the middle of its stroke [m³].
@@ -36,6 +37,11 @@ impl Chamber {
             (Some((area, _)), Some(stroke)) => area * numbers[stroke.0] * 0.5,
             _ => T::zero(),
         }
+    }
+
+    /// Pressed area of the piston [m²].
+    pub(crate) fn piston_area<T: Scalar>(self, spec: &Spec<Slot>, numbers: &[T]) -> T {
+        self.cylinder_area(spec, numbers).map_or(T::zero(), |(area, _)| area)
     }
 
     // Pressed area of the piston and motion ratio. The rod is on the rebound side, of a through rod on both.

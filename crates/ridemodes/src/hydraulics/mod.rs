@@ -8,6 +8,6 @@ mod reduction;
 mod valve;
 
 pub(crate) use chamber::Chamber;
-pub(crate) use network::{Network, NetworkValues, Store, Way};
+pub(crate) use network::{Network, NetworkValues, OilState, Store, Way};
 pub(crate) use plan::pressure;
 pub(crate) use reduction::{Reduction, Row, reduce};

@@ -5,9 +5,9 @@ use std::sync::Arc;
 use super::chamber::Chamber;
 use super::oil::{Oil, pipe_area};
 use super::valve;
-use crate::gas::{self, Fill, GasState};
+use crate::gas::{Fill, Gas};
 use crate::numerics::Scalar;
-use crate::spec::{self, Inertia, Slot, Spec, Valve};
+use crate::spec::{self, GasKind, Inertia, Slot, Spec, Valve};
 
 /// What stores volume at a node.
 #[derive(Debug)]
@@ -75,6 +75,21 @@ pub(crate) struct AccumulatorRef {
     pub(super) precharge: Slot,
     pub(super) precharge_temperature: Slot,
     pub(super) exponent: Slot,
+    pub(super) kind: GasKind,
+    pub relaxation_name: Arc<str>,
+    pub relaxation_time: Option<Slot>,
+    pub least_gas_volume: Slot,
+    pub yearly_loss: Slot,
+}
+
+impl Node {
+    /// Accumulators whose gas is at the node.
+    pub(crate) fn gases(&self) -> impl Iterator<Item = usize> + '_ {
+        self.stores.iter().filter_map(|named| match named.store {
+            Store::Gas(index) => Some(index),
+            _ => None,
+        })
+    }
 }
 
 /// Nodes, lines and accumulators in a fixed order.
@@ -83,6 +98,8 @@ pub(crate) struct Network {
     pub circuits: Vec<Arc<str>>,
     /// Design pressure of each circuit.
     pub pressures: Vec<Slot>,
+    /// Node of each circuit's hub.
+    pub hubs: Vec<usize>,
     pub nodes: Vec<Node>,
     pub lines: Vec<Line>,
     pub ways: Vec<Way>,
@@ -108,7 +125,21 @@ impl<T: Scalar> LineValues<T> {
     }
 }
 
-/// Numbers of the network at its design condition.
+// What a store amounts to.
+enum Stored<T> {
+    Oil(T),
+    Hose(T),
+    Gas(usize),
+}
+
+/// Where the oil stands: its temperature, the pressure of each node, the compliance of each accumulator's gas.
+pub(crate) struct OilState<T> {
+    pub temperature: T,
+    pub pressure: Vec<T>,
+    pub gas: Vec<T>,
+}
+
+/// Numbers of the network at a state.
 pub(crate) struct NetworkValues<T> {
     /// Compliance of each node's stores, in their order [m³/Pa].
     pub compliance: Vec<Vec<T>>,
@@ -127,33 +158,56 @@ impl<T: Scalar> NetworkValues<T> {
 }
 
 impl Network {
-    /// Compliances, resistances, inertances and gas at the design condition.
-    pub(crate) fn values<T: Scalar>(&self, spec: &Spec<Slot>, numbers: &[T]) -> NetworkValues<T> {
-        let value = |slot: Slot| numbers[slot.0];
-        let temperature = value(spec.temperature);
-        let Some(oil) = &spec.oil else { return NetworkValues { compliance: Vec::new(), lines: Vec::new() } };
-        let oil = Oil::new(oil, numbers, temperature, value(spec.atmosphere));
-        let gas: Vec<GasState<T>> = self.accumulators.iter().map(|a| a.gas(numbers, temperature)).collect();
-        let store = |store: &Store, pressure: T| {
-            let volume = match store {
-                Store::Extra(volume) => value(*volume),
-                Store::Chamber(chamber) => chamber.rest_volume(spec, numbers),
-                Store::PipeOil { pipe, share } => pipe_volume(&self.pipes[*pipe], numbers) * *share,
-                Store::PipeSwell { pipe, share } => {
-                    let pipe = &self.pipes[*pipe];
-                    let swell = pipe.length.map_or(T::zero(), |length| value(pipe.swell) * value(length));
-                    return (swell + value(pipe.compliance)) * *share;
+    /// Oil volume [m³] and hose compliance [m³/Pa] of each node.
+    pub(crate) fn stores<T: Scalar>(&self, spec: &Spec<Slot>, numbers: &[T]) -> Vec<(T, T)> {
+        let of_node = |node: &Node| {
+            let mut sums = (T::zero(), T::zero());
+            for named in &node.stores {
+                match self.store(&named.store, spec, numbers) {
+                    Stored::Oil(volume) => sums.0 += volume,
+                    Stored::Hose(compliance) => sums.1 += compliance,
+                    Stored::Gas(_) => {}
                 }
-                Store::Swell(slot) => return value(*slot),
-                Store::Gas(index) => return gas[*index].compliance,
-            };
-            // (N4) C = V/β_e
-            volume * oil.compressibility(pressure)
+            }
+            sums
         };
+        self.nodes.iter().map(of_node).collect()
+    }
+
+    fn store<T: Scalar>(&self, store: &Store, spec: &Spec<Slot>, numbers: &[T]) -> Stored<T> {
+        let value = |slot: Slot| numbers[slot.0];
+        match store {
+            Store::Extra(volume) => Stored::Oil(value(*volume)),
+            Store::Chamber(chamber) => Stored::Oil(chamber.rest_volume(spec, numbers)),
+            Store::PipeOil { pipe, share } => Stored::Oil(pipe_volume(&self.pipes[*pipe], numbers) * *share),
+            Store::PipeSwell { pipe, share } => {
+                let pipe = &self.pipes[*pipe];
+                let swell = pipe.length.map_or(T::zero(), |length| value(pipe.swell) * value(length));
+                Stored::Hose((swell + value(pipe.compliance)) * *share)
+            }
+            Store::Swell(slot) => Stored::Hose(value(*slot)),
+            Store::Gas(index) => Stored::Gas(*index),
+        }
+    }
+
+    /// Compliances, resistances and inertances at a state: the pressure of each node, and the compliance of each gas.
+    pub(crate) fn values<T: Scalar>(&self, spec: &Spec<Slot>, numbers: &[T], state: &OilState<T>) -> NetworkValues<T> {
+        let value = |slot: Slot| numbers[slot.0];
+        let Some(oil) = &spec.oil else { return NetworkValues { compliance: Vec::new(), lines: Vec::new() } };
+        let oil = Oil::new(oil, numbers, state.temperature, value(spec.atmosphere));
         let compliance = self
             .nodes
             .iter()
-            .map(|node| node.stores.iter().map(|named| store(&named.store, value(node.pressure))).collect())
+            .zip(&state.pressure)
+            .map(|(node, &pressure)| {
+                let of_store = |named: &NamedStore| match self.store(&named.store, spec, numbers) {
+                    // (N4) C = V/β_e
+                    Stored::Oil(volume) => volume * oil.compressibility(pressure),
+                    Stored::Hose(compliance) => compliance,
+                    Stored::Gas(index) => state.gas[index],
+                };
+                node.stores.iter().map(of_store).collect()
+            })
             .collect();
         let is_true = |flag: Option<Slot>| flag.is_some_and(|flag| numbers[flag.0].value() == 1.0);
         let lines = self
@@ -175,6 +229,20 @@ impl Network {
             })
             .collect();
         NetworkValues { compliance, lines }
+    }
+
+    /// The oil at the design condition.
+    pub(crate) fn design_state<T: Scalar>(&self, spec: &Spec<Slot>, numbers: &[T]) -> OilState<T> {
+        let temperature = numbers[spec.temperature.0];
+        let gas = |own: &AccumulatorRef| {
+            let (gas, at) = (own.gas(numbers, temperature), [numbers[own.pressure.0], temperature]);
+            gas.compliances(gas.at(at[0], at[1]), at)[1]
+        };
+        OilState {
+            temperature,
+            pressure: self.nodes.iter().map(|node| numbers[node.pressure.0]).collect(),
+            gas: self.accumulators.iter().map(gas).collect(),
+        }
     }
 
     /// The connected region of each node, numbered from 0, with the lines that `open` takes.
@@ -223,16 +291,15 @@ fn pipe_values<T: Scalar>(pipe: &spec::Line<Slot>, numbers: &[T], oil: &Oil<T>) 
 }
 
 impl AccumulatorRef {
-    /// Gas at the circuit's design pressure.
-    pub(crate) fn gas<T: Scalar>(&self, numbers: &[T], temperature: T) -> GasState<T> {
+    /// Its gas, charged as the file says; `temperature` is that of the design condition.
+    pub(crate) fn gas<T: Scalar>(&self, numbers: &[T], temperature: T) -> Gas<T> {
         let value = |slot: Slot| numbers[slot.0];
         let fill = match self.fill {
             Fill::Precharge(volume) => Fill::Precharge(value(volume)),
             Fill::Rest(volume) => Fill::Rest(value(volume)),
         };
+        let at_rest = [value(self.pressure), temperature];
         let (precharge, charged_at) = (value(self.precharge), value(self.precharge_temperature));
-        let pressure = value(self.pressure);
-        let empty = pressure.value() < precharge.value() * temperature.value() / charged_at.value();
-        gas::ideal(fill, precharge, charged_at, value(self.exponent), pressure, temperature, empty)
+        Gas::charged(self.kind, fill, precharge, charged_at, value(self.exponent), at_rest)
     }
 }

@@ -75,6 +75,7 @@ impl Network {
             let node = network.node(&base, index, pressure);
             network.hold(node, &format!("{base}.oil"), Store::Extra(circuit.volume));
             network.hold(node, &format!("{base}.swell"), Store::Swell(circuit.compliance));
+            network.hubs.push(node);
             places.insert(name, node);
         }
         for (name, own) in &spec.nodes.0 {
@@ -172,6 +173,11 @@ impl Network {
             precharge: accumulator.precharge,
             precharge_temperature: accumulator.precharge_temperature,
             exponent: accumulator.exponent,
+            kind: accumulator.gas,
+            relaxation_name: format!("{path}.relaxation").into(),
+            relaxation_time: accumulator.relaxation_time,
+            least_gas_volume: accumulator.least_gas_volume,
+            yearly_loss: accumulator.yearly_loss,
         });
     }
 

@@ -108,6 +108,9 @@ impl Scalar for Dual {
     fn is_zero(self) -> bool {
         self.value == 0.0 && self.derivative == 0.0
     }
+    fn is_settled(self) -> bool {
+        self.derivative == 0.0
+    }
     fn sqrt(self) -> Self {
         let root = self.value.sqrt();
         self.chain(root, 0.5 / root)

@@ -25,6 +25,8 @@ pub trait Scalar:
     fn value(self) -> f64;
     /// Whether it is zero and does not change either.
     fn is_zero(self) -> bool;
+    /// Whether it does not change.
+    fn is_settled(self) -> bool;
     /// Square root.
     fn sqrt(self) -> Self;
     /// Exponential.
@@ -63,6 +65,9 @@ impl Scalar for f64 {
     }
     fn is_zero(self) -> bool {
         self == 0.0
+    }
+    fn is_settled(self) -> bool {
+        true
     }
     fn sqrt(self) -> Self {
         f64::sqrt(self)

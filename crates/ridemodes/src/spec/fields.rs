@@ -11,6 +11,7 @@ use crate::units::STANDARD_ATMOSPHERE;
 const ANY: Bounds = Bounds::ANY;
 const NOT_NEGATIVE: Bounds = Bounds::NOT_NEGATIVE;
 const POSITIVE: Bounds = Bounds::POSITIVE;
+const LOADS: Bounds = Bounds::within(-100.0, 100.0);
 const RESISTANCE: Bounds = Bounds::within(0.0, 1e15);
 /// The two-viscosity law needs more than 0.3 mm²/s.
 const VISCOSITY: Bounds = Bounds::within(4e-7, 0.1);
@@ -50,6 +51,14 @@ words! {
         ThroughRod = "through_rod",
         /// Both chambers joined through the piston; the port is on the full side and the rod area acts.
         PistonValve = "piston_valve",
+    }
+
+    /// How gas in an accumulator behaves.
+    GasKind {
+        /// Ideal gas with the polytropic exponent given.
+        Ideal = "ideal",
+        /// Real nitrogen by a published equation of state; the exponent is not used.
+        Nitrogen = "nitrogen",
     }
 
     /// What kind of motion an amplitude describes.
@@ -120,6 +129,8 @@ tables! {
         links: Named<Link<N>> = named(Link),
         /// Places where people sit.
         seats: Named<Seat<N>> = named(Seat),
+        /// Named load cases.
+        cases: Named<Case<N>> = named(Case),
         /// Named settings: values by path that override the file's.
         settings: Named<BTreeMap<String, serde_json::Value>> = overrides,
     }
@@ -150,6 +161,12 @@ tables! {
         track: N = number("m", Bounds::up_to(20.0)),
         /// Height of the roll centre above the ground.
         roll_centre_height: N = number("m", ANY, 0.0),
+        /// Height of the unsprung masses' centre of gravity above the ground.
+        unsprung_height: N = number("m", Bounds::within(0.0, 5.0), 0.3),
+        /// Share of the axle's load change under braking that its links carry past the springs.
+        anti_braking: N = number("1", Bounds::within(-2.0, 2.0), 0.0),
+        /// Share of the axle's load change under drive that its links carry past the springs.
+        anti_driving: N = number("1", Bounds::within(-2.0, 2.0), 0.0),
         /// Anti-roll bar.
         anti_roll_bar: Option<AntiRollBar<N>> = maybe(AntiRollBar),
         /// Both corners.
@@ -174,6 +191,10 @@ tables! {
         tyre: Tyre<N> = table(Tyre),
         /// Spring.
         spring: Option<Spring<N>> = maybe(Spring),
+        /// Stop that ends the travel in bump.
+        bump_stop: Option<Stop<N>> = maybe(Stop),
+        /// Stop that ends the travel in rebound.
+        rebound_stop: Option<Stop<N>> = maybe(Stop),
         /// Damper.
         damper: Option<Damper<N>> = maybe(Damper),
         /// Hydraulic cylinder.
@@ -192,7 +213,23 @@ tables! {
     Spring {
         /// Rate of the spring itself.
         rate: N = number("N/m", NOT_NEGATIVE),
+        /// Hardening: force per third power of spring travel.
+        cubic: N = number("N/m^3", NOT_NEGATIVE, 0.0),
         /// Spring travel over wheel travel.
+        motion_ratio: N = number("1", POSITIVE, 1.0),
+        /// Change of the motion ratio per wheel travel, bump positive.
+        motion_ratio_slope: N = number("1/m", Bounds::within(-100.0, 100.0), 0.0),
+    }
+
+    /// Elastic stop: beyond its gap the force is rate·x + cubic·x³.
+    Stop {
+        /// Free travel of the stop from the design height.
+        gap: N = number("m", Bounds::within(0.0, 5.0)),
+        /// Rate beyond the gap.
+        rate: N = number("N/m", POSITIVE),
+        /// Hardening: force per third power of travel beyond the gap.
+        cubic: N = number("N/m^3", NOT_NEGATIVE, 0.0),
+        /// Stop travel over wheel travel.
         motion_ratio: N = number("1", POSITIVE, 1.0),
     }
 
@@ -227,6 +264,8 @@ tables! {
         rod: N = number("m", Bounds::within(0.0, 1.0)),
         /// Piston travel over wheel travel.
         motion_ratio: N = number("1", POSITIVE, 1.0),
+        /// Change of the motion ratio per wheel travel, bump positive.
+        motion_ratio_slope: N = number("1/m", Bounds::within(-100.0, 100.0), 0.0),
         /// Stroke; at rest the piston is in its middle. Sets the oil volume of the chambers.
         stroke: N = number("m", Bounds::within(0.0, 5.0), 0.0),
         /// Resistance of the passage through the piston, of a `piston_valve` cylinder.
@@ -263,6 +302,8 @@ tables! {
     Circuit {
         /// System pressure at the design condition; left out, that of the circuit it is joined to by lines.
         pressure: Option<N> = maybe_pressure,
+        /// Least pressure allowed; left out, 1 bar above the atmosphere.
+        minimum_pressure: Option<N> = maybe_pressure,
         /// Oil volume at the hub beside that of chambers and lines.
         volume: N = number("m^3", NOT_NEGATIVE, 0.0),
         /// Swell of hoses at the hub: volume per pressure.
@@ -410,8 +451,16 @@ tables! {
         precharge: N = pressure,
         /// Temperature at which the precharge is stated.
         precharge_temperature: N = number("K", Bounds::within(200.0, 450.0), 293.15),
+        /// How the gas behaves.
+        gas: GasKind = choice(GasKind),
         /// Polytropic exponent of the gas: 1 isothermal, 1.4 adiabatic.
         exponent: N = number("1", Bounds::within(1.0, 2.5), 1.4),
+        /// Time in which the gas takes the temperature of its wall; left out, vibration is without heat exchange.
+        relaxation_time: Option<N> = optional("s", Bounds::within(1e-4, 1e6)),
+        /// Gas volume at which the separator meets its end stop.
+        least_gas_volume: N = number("m^3", Bounds::within(0.0, 0.2), 0.0),
+        /// Share of the charge that permeates each year.
+        yearly_loss: N = number("1", Bounds::within(0.0, 0.9), 0.0),
         /// Node that it is at; left out, the hub of the circuit.
         node: Option<String> = text,
         /// Resistance of the throttle before the accumulator.
@@ -450,6 +499,50 @@ tables! {
         rear_bump: Port<N> = filled(Port),
         /// Rear chambers that bump expands.
         rear_rebound: Port<N> = filled(Port),
+    }
+
+    /// Load case: what the vehicle stands under.
+    Case {
+        /// Acceleration to the left.
+        lateral: N = number("m/s^2", LOADS, 0.0),
+        /// Acceleration forward.
+        longitudinal: N = number("m/s^2", LOADS, 0.0),
+        /// Acceleration upwards, added to gravity.
+        vertical: N = number("m/s^2", Bounds::within(-500.0, 500.0), 0.0),
+        /// Temperature of gas and oil; left out, that of the design condition.
+        temperature: Option<N> = optional("K", Bounds::within(200.0, 450.0)),
+        /// Aerodynamic load on the front axle, downwards.
+        downforce_front: N = number("N", Bounds::within(-1e6, 1e6), 0.0),
+        /// Aerodynamic load on the rear axle, downwards.
+        downforce_rear: N = number("N", Bounds::within(-1e6, 1e6), 0.0),
+        /// Slope of the ground across, left side higher.
+        side_slope: N = number("rad", Bounds::within(-1.5, 1.5), 0.0),
+        /// Slope of the ground ahead, uphill.
+        grade: N = number("rad", Bounds::within(-1.5, 1.5), 0.0),
+        /// Height of the ground under the front left wheel.
+        front_left: N = number("m", Bounds::within(-2.0, 2.0), 0.0),
+        /// Height of the ground under the front right wheel.
+        front_right: N = number("m", Bounds::within(-2.0, 2.0), 0.0),
+        /// Height of the ground under the rear left wheel.
+        rear_left: N = number("m", Bounds::within(-2.0, 2.0), 0.0),
+        /// Height of the ground under the rear right wheel.
+        rear_right: N = number("m", Bounds::within(-2.0, 2.0), 0.0),
+        /// Point masses carried.
+        payload: Named<PointMass<N>> = named(PointMass),
+        /// Whether the gas exchanges no heat on the way there.
+        fast: Flag<N> = flag,
+    }
+
+    /// Point mass carried by the body.
+    PointMass {
+        /// Mass.
+        mass: N = number("kg", NOT_NEGATIVE),
+        /// Distance ahead of the body's centre of gravity.
+        x: N = number("m", ANY, 0.0),
+        /// Distance to the left of the body's centre of gravity.
+        y: N = number("m", ANY, 0.0),
+        /// Height above the body's centre of gravity.
+        z: N = number("m", ANY, 0.0),
     }
 
     /// Place where a person sits.

@@ -6,10 +6,10 @@ use super::{Assembly, Element, ElementKind, PressureRow, mechanical_names};
 use crate::axes::{CORNERS, Corner, MECHANICAL};
 use crate::equivalent::{Pieces, of_dry_friction};
 use crate::error::Result;
-use crate::hydraulics::{Chamber, Reduction, Row, Store, reduce};
+use crate::hydraulics::{Chamber, Network, OilState, Reduction, Row, Store, reduce};
 use crate::numerics::Scalar;
 use crate::spec::{Damper, Motion, Slot};
-use crate::statics::Positions;
+use crate::statics::{At, Payload, Positions};
 use crate::vehicle::Structure;
 
 /// What slow lines do.
@@ -21,23 +21,36 @@ pub(crate) enum SlowLines {
     Shut,
 }
 
-/// Assembles the linear system at the design condition.
-pub(crate) fn assemble<T: Scalar>(structure: &Structure, numbers: &[T], slow: SlowLines) -> Result<Assembly<T>> {
+/// Assembles the linear system at a state. `gravity` takes the moment of the leaned body's weight in.
+pub(crate) fn assemble<T: Scalar>(
+    structure: &Structure,
+    numbers: &[T],
+    at: &At<T>,
+    payload: &[Payload],
+    slow: SlowLines,
+    gravity: bool,
+) -> Result<Assembly<T>> {
     let spec = &structure.spec;
     let network = &structure.network;
     let value = |slot: Slot| numbers[slot.0];
-    let oil = network.values(spec, numbers);
+    let relaxing: Vec<bool> =
+        network.accumulators.iter().map(|accumulator| accumulator.relaxation_time.is_some()).collect();
+    let gas = at.gas.iter().zip(&relaxing).map(|(gas, &relaxing)| gas.compliance[usize::from(!relaxing)]);
+    let state = OilState { gas: gas.collect(), pressure: at.oil.pressure.clone(), temperature: at.oil.temperature };
+    let oil = network.values(spec, numbers, &state);
     // Branches on a value are decided in f64.
     let shut = slow == SlowLines::Shut;
     let open: Vec<bool> = oil.lines.iter().map(|line| !(line.closed || shut && line.slow)).collect();
-    let ideal: Vec<bool> = oil.lines.iter().map(|line| line.is_ideal()).collect();
+    let mut ideal: Vec<bool> = oil.lines.iter().map(|line| line.is_ideal()).collect();
+    keep_apart(network, &relaxing, &open, &mut ideal);
     let inertial: Vec<bool> = oil.lines.iter().map(|line| line.inertance.value() > 0.0).collect();
+    let gives = |stores: &Vec<T>| stores.iter().any(|store| store.value() > 0.0);
     let compliant: Vec<bool> =
-        oil.compliance.iter().map(|stores| stores.iter().any(|store| store.value() > 0.0)).collect();
-    let area = |chamber: Chamber| chamber.signed_area(spec, numbers);
+        oil.compliance.iter().zip(&at.open).map(|(stores, &open)| open || gives(stores)).collect();
+    let area = |chamber: Chamber| chamber.signed_area(spec, numbers, at.deflection[chamber.corner.index()]);
     let reduction = reduce(network, &open, &ideal, &inertial, &compliant, |chamber| area(chamber).value())?;
     let layout = Layout::new(structure, &reduction);
-    let mut build = Builder { positions: Positions::new(spec, numbers), size: layout.size, elements: Vec::new() };
+    let mut build = Builder { positions: at.positions(), size: layout.size, elements: Vec::new() };
 
     for corner in CORNERS {
         let Some(data) = spec.corner(corner) else { continue };
@@ -49,12 +62,26 @@ pub(crate) fn assemble<T: Scalar>(structure: &Structure, numbers: &[T], slow: Sl
             wheel.clone(),
             [value(data.unsprung_mass), T::zero(), T::zero()],
         );
-        build.add(&names.tyre, ElementKind::Tyre, wheel, [T::zero(), value(data.tyre.damping), value(data.tyre.rate)]);
+        let (damping, rate) = (value(data.tyre.damping), value(data.tyre.rate));
+        let tyre = if at.contact[corner.index()] { [T::zero(), damping, rate] } else { [T::zero(); 3] };
+        build.add(&names.tyre, ElementKind::Tyre, wheel, tyre);
         build.on_road(corner);
-        if let Some(spring) = &data.spring {
-            // e = MR δ
-            let row = build.travel(corner, value(spring.motion_ratio));
-            build.add(&names.spring, ElementKind::Spring, row, [T::zero(), T::zero(), value(spring.rate)]);
+        let (part, delta) = (&at.parts.corners[corner.index()], at.deflection[corner.index()]);
+        if let Some(spring) = &part.spring {
+            // de/dδ = MR + MR′ δ; a slope of it turns the force too: F·MR′
+            let row = build.travel(corner, spring.lever.at(delta));
+            build.add(&names.spring, ElementKind::Spring, row, [T::zero(), T::zero(), spring.rate(delta)]);
+            if !spring.lever.slope.is_zero() {
+                let row = build.travel(corner, T::one());
+                let turned = spring.force(delta) * spring.lever.slope;
+                build.add(&names.spring_geometry, ElementKind::Geometry, row, [T::zero(), T::zero(), turned]);
+            }
+        }
+        for (stop, name) in part.stops.iter().zip([&names.bump_stop, &names.rebound_stop]) {
+            if let Some(stop) = stop.filter(|stop| stop.depth(delta).value() > 0.0) {
+                let row = build.travel(corner, stop.ratio);
+                build.add(name, ElementKind::Stop, row, [T::zero(), T::zero(), stop.rate(delta)]);
+            }
         }
         if let Some(damper) = &data.damper {
             let mut row = build.travel(corner, value(damper.motion_ratio));
@@ -76,7 +103,8 @@ pub(crate) fn assemble<T: Scalar>(structure: &Structure, numbers: &[T], slow: Sl
             );
         }
         if let Some(cylinder) = &data.cylinder {
-            let row = build.travel(corner, value(cylinder.motion_ratio));
+            let lever = value(cylinder.motion_ratio) + value(cylinder.motion_ratio_slope) * delta;
+            let row = build.travel(corner, lever);
             let (force, amplitude) = (value(cylinder.friction), cylinder.amplitude.map(value));
             build.friction(&names.cylinder_friction, row, force, amplitude, cylinder.motion);
         }
@@ -103,8 +131,18 @@ pub(crate) fn assemble<T: Scalar>(structure: &Structure, numbers: &[T], slow: Sl
         build.add(name, ElementKind::Link, row, [link.inertance, link.damping, link.rate].map(value));
     }
 
+    for region in at.parts.regions.iter().zip(&at.pressure) {
+        // ±(p − p_atm) A·MR′ of chambers
+        for chamber in region.0.chambers.iter().filter(|chamber| !chamber.lever.slope.is_zero()) {
+            let corner = CORNERS[chamber.corner];
+            let row = build.travel(corner, T::one());
+            let turned = (*region.1 - at.parts.atmosphere) * chamber.area * chamber.lever.slope;
+            let name = &structure.names.corners[chamber.corner].cylinder_geometry;
+            build.add(name, ElementKind::OilGeometry, row, [T::zero(), T::zero(), turned]);
+        }
+    }
     let mut pressures = Vec::new();
-    for pool in &reduction.pools {
+    for pool in reduction.pools.iter().filter(|pool| !pool.nodes.iter().any(|&node| at.open[node])) {
         let inflow = build.oil(&pool.inflow, &layout, area);
         let mut compliance = T::zero();
         for &node in &pool.nodes {
@@ -124,6 +162,27 @@ pub(crate) fn assemble<T: Scalar>(structure: &Structure, numbers: &[T], slow: Sl
                 let share = store / compliance.square();
                 build.add(&named.name, kind, inflow.clone(), [T::zero(), T::zero(), share]);
             }
+        }
+        for index in pool.nodes.iter().flat_map(|&node| network.nodes[node].gases()) {
+            let (Some(time), Some(inner)) = (network.accumulators[index].relaxation_time, layout.gases[index]) else {
+                continue;
+            };
+            let [slow, fast] = at.gas[index].compliance;
+            let others = compliance - slow;
+            // Beside what else gives at the node, K_iso + ΔK sτ/(1 + sτ) of the gas keeps its form: with C_o of the
+            // others, K = 1/(C_o + C_gas) slow and fast, and τ (1 + C_o K_ad)/(1 + C_o K_iso).
+            let stiffening = T::one() / (others + fast) - T::one() / compliance;
+            let longer = value(time) * (others + fast) * slow / (fast * compliance);
+            let (stiffening, time) = if slow.value() > 0.0 { (stiffening, longer) } else { (T::zero(), value(time)) };
+            let mut row = inflow.clone();
+            row[inner] = -T::one();
+            let name = &network.accumulators[index].relaxation_name;
+            build.add(name, ElementKind::Gas, row, [T::zero(), T::zero(), stiffening]);
+            let mut own = build.zeros();
+            own[inner] = T::one();
+            // An empty accumulator still has its coordinate: it must not float.
+            let resistance = if stiffening.value() > 0.0 { stiffening * time } else { T::one() };
+            build.add(name, ElementKind::Gas, own, [T::zero(), resistance, T::zero()]);
         }
         let name = Arc::clone(&network.nodes[pool.nodes[0]].name);
         pressures.push(PressureRow { name, inflow, compliance });
@@ -152,15 +211,17 @@ pub(crate) fn assemble<T: Scalar>(structure: &Structure, numbers: &[T], slow: Sl
     };
     let carried = reduction.moved.iter().find_map(|(_, moved)| carried(moved));
 
-    // About the centre of gravity: [[m, 0, 0], [0, I_yy, −P_xy], [0, −P_xy, I_xx]]
-    let body = &spec.body;
-    let product = -value(body.roll_pitch_product);
-    let zero = T::zero();
-    let body = [
-        [value(body.mass), zero, zero],
-        [zero, value(body.pitch_inertia), product],
-        [zero, product, value(body.roll_inertia)],
-    ];
+    if gravity {
+        // K_φφ − m g h′ of the leaned body and M_φφ + m h′² of the same motion about the roll axis
+        let mut row = build.zeros();
+        row[2] = T::one();
+        let arm = at.parts.arm;
+        let turned = [at.parts.mass * arm.square(), T::zero(), -at.parts.leaning];
+        build.add(&structure.names.gravity, ElementKind::Gravity, row, turned);
+    }
+
+    let inertia = [spec.body.roll_inertia, spec.body.pitch_inertia, spec.body.roll_pitch_product].map(value);
+    let body = at.body(value(spec.body.mass), inertia, payload);
     let circulations = reduction
         .circulations
         .iter()
@@ -175,6 +236,7 @@ pub(crate) fn assemble<T: Scalar>(structure: &Structure, numbers: &[T], slow: Sl
     Ok(Assembly {
         coordinates: layout.names,
         volumes: layout.volumes,
+        gases: layout.gases.iter().copied().flatten().collect(),
         body,
         elements: build.elements,
         pressures,
@@ -182,6 +244,19 @@ pub(crate) fn assemble<T: Scalar>(structure: &Structure, numbers: &[T], slow: Sl
         circulations,
         carried,
     })
+}
+
+// Gases that relax side by side at one pressure are kept at nodes of their own: their ways stay coordinates, which follow
+// statically.
+fn keep_apart(network: &Network, relaxing: &[bool], open: &[bool], ideal: &mut [bool]) {
+    let pools = network.regions(|line| open[line] && ideal[line]);
+    let relaxes = |node: usize| network.nodes[node].gases().any(|gas| relaxing[gas]);
+    let count = |pool: usize| (0..pools.len()).filter(|&node| pools[node] == pool && relaxes(node)).count();
+    for (line, ideal) in network.lines.iter().zip(ideal) {
+        if *ideal && relaxes(line.to) && count(pools[line.to]) > 1 {
+            *ideal = false;
+        }
+    }
 }
 
 // As given, or E[F v]/E[v²] of the table at its amplitude.
@@ -204,6 +279,8 @@ struct Layout {
     volumes: Vec<usize>,
     /// Coordinate of the damper's own travel at each corner.
     inner: [Option<usize>; 4],
+    /// Coordinate of the volume that relaxes in each gas.
+    gases: Vec<Option<usize>>,
     size: usize,
 }
 
@@ -212,6 +289,7 @@ impl Layout {
         enum Owner {
             Volume(usize),
             Damper(usize),
+            Gas(usize),
         }
         let volumes = reduction
             .kept
@@ -222,12 +300,16 @@ impl Layout {
             structure.spec.corner(corner)?.damper.as_ref()?.mount_rate?;
             Some((Arc::clone(&structure.names.corners[corner.index()].damper), Owner::Damper(corner.index())))
         });
-        let mut others: Vec<(Arc<str>, Owner)> = volumes.chain(dampers).collect();
+        let accumulators = &structure.network.accumulators;
+        let gases = accumulators.iter().enumerate().filter(|(_, accumulator)| accumulator.relaxation_time.is_some());
+        let gases = gases.map(|(index, accumulator)| (Arc::clone(&accumulator.relaxation_name), Owner::Gas(index)));
+        let mut others: Vec<(Arc<str>, Owner)> = volumes.chain(dampers).chain(gases).collect();
         others.sort_by(|a, b| a.0.cmp(&b.0));
         let mut layout = Self {
             names: mechanical_names().collect(),
             volumes: vec![0; reduction.kept.len()],
             inner: [None; 4],
+            gases: vec![None; accumulators.len()],
             size: MECHANICAL + others.len(),
         };
         for (name, owner) in others {
@@ -236,6 +318,7 @@ impl Layout {
             match owner {
                 Owner::Volume(kept) => layout.volumes[kept] = place,
                 Owner::Damper(corner) => layout.inner[corner] = Some(place),
+                Owner::Gas(index) => layout.gases[index] = Some(place),
             }
         }
         layout
@@ -340,6 +423,11 @@ mod tests {
         sums
     }
 
+    fn at_design<T: Scalar>(car: &Vehicle, numbers: &[T]) -> Assembly<T> {
+        let at = car.settle().unwrap().at(numbers);
+        assemble(car.structure(), numbers, &at, &[], SlowLines::Flow, false).unwrap()
+    }
+
     // The derivative with respect to every number of every example, against central differences.
     #[test]
     fn derivatives_by_every_number() {
@@ -349,7 +437,7 @@ mod tests {
             let at = |slot: usize, value: f64| {
                 let mut numbers = car.numbers().to_vec();
                 numbers[slot] = value;
-                matrices(&assemble(car.structure(), &numbers, SlowLines::Flow).unwrap())
+                matrices(&at_design(&car, &numbers))
             };
             for (slot, parameter) in car.structure().parameters.iter().enumerate() {
                 if parameter.field.kind.number().is_none() {
@@ -365,7 +453,7 @@ mod tests {
                         if i == slot { Dual::variable(number) } else { Dual::constant(number) }
                     })
                     .collect();
-                let exact = matrices(&assemble(car.structure(), &seeded, SlowLines::Flow).unwrap());
+                let exact = matrices(&at_design(&car, &seeded));
                 let step = 1e-5 * value;
                 for ((exact, above), below) in exact.iter().zip(at(slot, value + step)).zip(at(slot, value - step)) {
                     let size = |i: usize| exact[(i, i)].value.abs();

@@ -32,6 +32,12 @@ pub enum ElementKind {
     Tyre,
     /// Suspension spring.
     Spring,
+    /// Bump or rebound stop that is engaged.
+    Stop,
+    /// Turning of a spring's force by a motion ratio that changes.
+    Geometry,
+    /// Moment of the leaned body's weight, with the inertia of the same motion.
+    Gravity,
     /// Anti-roll bar.
     AntiRollBar,
     /// Mechanical link between wheels.
@@ -46,6 +52,8 @@ pub enum ElementKind {
     Gas,
     /// Compressibility of oil.
     Oil,
+    /// Turning of a cylinder's force by a motion ratio that changes.
+    OilGeometry,
     /// Swell of hoses.
     Hose,
     /// Throttle.
@@ -59,12 +67,25 @@ pub enum ElementKind {
 impl ElementKind {
     /// Whether the element belongs to the oil network.
     pub fn is_hydraulic(self) -> bool {
-        matches!(self, Self::Gas | Self::Oil | Self::Hose | Self::Throttle | Self::Valve | Self::Line)
+        matches!(
+            self,
+            Self::Gas | Self::Oil | Self::OilGeometry | Self::Hose | Self::Throttle | Self::Valve | Self::Line
+        )
     }
 
     /// Whether the element acts between wheel and body, mechanically.
     pub fn is_conventional(self) -> bool {
-        matches!(self, Self::Spring | Self::AntiRollBar | Self::Link | Self::Damper | Self::Friction | Self::Mount)
+        matches!(
+            self,
+            Self::Spring
+                | Self::Stop
+                | Self::Geometry
+                | Self::AntiRollBar
+                | Self::Link
+                | Self::Damper
+                | Self::Friction
+                | Self::Mount
+        )
     }
 
     /// The kind in words.
@@ -73,6 +94,9 @@ impl ElementKind {
             Self::WheelMass => "wheel mass",
             Self::Tyre => "tyre",
             Self::Spring => "spring",
+            Self::Stop => "stop",
+            Self::Geometry => "geometry",
+            Self::Gravity => "gravity",
             Self::AntiRollBar => "anti-roll bar",
             Self::Link => "link",
             Self::Damper => "damper",
@@ -80,6 +104,7 @@ impl ElementKind {
             Self::Mount => "mount",
             Self::Gas => "gas",
             Self::Oil => "oil",
+            Self::OilGeometry => "oil geometry",
             Self::Hose => "hose",
             Self::Throttle => "throttle",
             Self::Valve => "valve",
@@ -120,8 +145,9 @@ pub(crate) struct PressureRow<T = f64> {
 /// Elements over the coordinates, in any scalar.
 pub(crate) struct Assembly<T> {
     pub coordinates: Vec<Arc<str>>,
-    /// Coordinates that are volumes.
+    /// Coordinates that are volumes moved through lines, and such that relax in gas.
     pub volumes: Vec<usize>,
+    pub gases: Vec<usize>,
     pub body: [[T; 3]; 3],
     pub elements: Vec<Element<T>>,
     pub pressures: Vec<PressureRow<T>>,
@@ -142,6 +168,8 @@ pub struct LinearSystem {
     pub(crate) point: OperatingPoint,
     pub(crate) coordinates: Vec<String>,
     volumes: Vec<usize>,
+    gases: Vec<usize>,
+    gravity: bool,
     pub(crate) elements: Vec<Element>,
     pub(crate) pressures: Vec<PressureRow>,
     pub(crate) positions: Positions<f64>,
@@ -163,7 +191,13 @@ pub struct LinearSystem {
 impl OperatingPoint {
     /// The linear system about this operating point.
     pub fn linear(&self) -> Result<LinearSystem> {
-        LinearSystem::new(self, SlowLines::Flow)
+        LinearSystem::new(self, SlowLines::Flow, false)
+    }
+
+    /// The same with the moment of the leaned body's weight, K_φφ − m g h′, and the inertia of the same motion about the
+    /// roll axis, M_φφ + m h′².
+    pub fn linear_with_gravity(&self) -> Result<LinearSystem> {
+        LinearSystem::new(self, SlowLines::Flow, true)
     }
 }
 
@@ -201,9 +235,11 @@ fn sum<T: Scalar>(
 }
 
 impl LinearSystem {
-    fn new(point: &OperatingPoint, slow: SlowLines) -> Result<Self> {
-        let vehicle = &point.vehicle;
-        let assembly: Assembly<f64> = assemble(vehicle.structure(), vehicle.numbers(), slow)?;
+    fn new(point: &OperatingPoint, slow: SlowLines, gravity: bool) -> Result<Self> {
+        let car = &point.car;
+        let at = point.at(car.numbers());
+        let payload = &point.condition.payload;
+        let assembly: Assembly<f64> = assemble(car.structure(), car.numbers(), &at, payload, slow, gravity)?;
         let mass = sum(&assembly, |element| element.mass, Some(&assembly.body));
         let damping = sum(&assembly, |element| element.damping, None);
         let stiffness = sum(&assembly, |element| element.stiffness, None);
@@ -211,6 +247,8 @@ impl LinearSystem {
             point: point.clone(),
             coordinates: assembly.coordinates.iter().map(ToString::to_string).collect(),
             volumes: assembly.volumes,
+            gases: assembly.gases,
+            gravity,
             elements: assembly.elements,
             pressures: assembly.pressures,
             positions: assembly.positions,
@@ -231,7 +269,7 @@ impl LinearSystem {
         if self.point.slow_lines.is_empty() {
             return Ok(self);
         }
-        let shut = self.shut.get(|| Self::new(&self.point, SlowLines::Shut).map(Box::new));
+        let shut = self.shut.get(|| Self::new(&self.point, SlowLines::Shut, self.gravity).map(Box::new));
         shut.as_ref().map(|shut| &**shut).map_err(Clone::clone)
     }
 
@@ -252,6 +290,8 @@ impl LinearSystem {
             point: self.point.clone(),
             coordinates: keep.iter().map(|&i| self.coordinates[i].clone()).collect(),
             volumes: Vec::new(),
+            gases: (0..keep.len()).filter(|&i| self.gases.contains(&keep[i])).collect(),
+            gravity: self.gravity,
             elements: self
                 .elements
                 .iter()
@@ -275,6 +315,11 @@ impl LinearSystem {
         })
     }
 
+    /// Whether the moment of the leaned body's weight is taken in.
+    pub fn has_gravity(&self) -> bool {
+        self.gravity
+    }
+
     /// The operating point it is taken at.
     pub fn point(&self) -> &OperatingPoint {
         &self.point
@@ -289,7 +334,7 @@ impl LinearSystem {
     pub fn coordinate_units(&self) -> Vec<&'static str> {
         let unit = |index: usize| match index {
             1 | 2 => "rad",
-            _ if self.volumes.contains(&index) => "m^3",
+            _ if self.volumes.contains(&index) || self.gases.contains(&index) => "m^3",
             _ => "m",
         };
         (0..self.coordinates.len()).map(unit).collect()

@@ -182,6 +182,11 @@ impl Vehicle {
         change::apply(self, &changes)
     }
 
+    /// The vehicle with a flag set.
+    pub(crate) fn with_flag(&self, path: &str) -> Result<Self> {
+        change::apply(self, &[(path.to_owned(), Value::Bool(true))])
+    }
+
     // Same structure, other numbers that have passed every check.
     fn with_checked_numbers(&self, numbers: Vec<f64>) -> Self {
         Self { structure: Arc::clone(&self.structure), numbers: numbers.into() }

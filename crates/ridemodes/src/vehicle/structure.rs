@@ -37,6 +37,7 @@ pub(crate) struct ElementNames {
     pub front_bar: Arc<str>,
     pub rear_bar: Arc<str>,
     pub links: Vec<Arc<str>>,
+    pub gravity: Arc<str>,
 }
 
 #[derive(Debug)]
@@ -44,10 +45,14 @@ pub(crate) struct CornerNames {
     pub wheel: Arc<str>,
     pub tyre: Arc<str>,
     pub spring: Arc<str>,
+    pub spring_geometry: Arc<str>,
+    pub bump_stop: Arc<str>,
+    pub rebound_stop: Arc<str>,
     pub damper: Arc<str>,
     pub damper_friction: Arc<str>,
     pub mount: Arc<str>,
     pub cylinder_friction: Arc<str>,
+    pub cylinder_geometry: Arc<str>,
 }
 
 impl ElementNames {
@@ -58,14 +63,24 @@ impl ElementNames {
                 wheel: name("wheel"),
                 tyre: name("tyre"),
                 spring: name("spring"),
+                spring_geometry: name("spring.geometry"),
+                bump_stop: name("bump_stop"),
+                rebound_stop: name("rebound_stop"),
                 damper: name("damper"),
                 damper_friction: name("damper.friction"),
                 mount: name("mount"),
                 cylinder_friction: name("cylinder.friction"),
+                cylinder_geometry: name("cylinder.geometry"),
             }
         });
         let links = spec.links.0.keys().map(|name| format!("links.{name}").into()).collect();
-        Self { corners, front_bar: "front.anti_roll_bar".into(), rear_bar: "rear.anti_roll_bar".into(), links }
+        Self {
+            corners,
+            front_bar: "front.anti_roll_bar".into(),
+            rear_bar: "rear.anti_roll_bar".into(),
+            links,
+            gravity: "gravity".into(),
+        }
     }
 }
 
@@ -91,7 +106,8 @@ impl Structure {
             return false;
         }
         let kinds = |numbers: &[f64]| {
-            let values = self.network.values(&self.spec, numbers);
+            let state = self.network.design_state(&self.spec, numbers);
+            let values = self.network.values(&self.spec, numbers, &state);
             let lines = values.lines.iter().map(|line| (line.is_ideal(), line.inertance > 0.0));
             let nodes = (0..self.network.nodes.len()).map(|node| values.node_compliance(node) > 0.0);
             (lines.collect::<Vec<_>>(), nodes.collect::<Vec<_>>())

@@ -1,16 +1,26 @@
 //! The operating point: what carries the vehicle when it stands.
 
-use std::sync::Arc;
+mod at;
+mod condition;
+mod limits;
+mod parts;
+mod solver;
 
 use serde::{Deserialize, Serialize};
 
 use crate::axes::{CORNERS, PerCorner};
 use crate::error::Result;
-use crate::hydraulics::{Network, NetworkValues, Store, Way};
+use crate::hydraulics::{Network, NetworkValues, OilState, Store, Way};
 use crate::numerics::Scalar;
 use crate::spec::{Slot, Spec};
 use crate::units::STANDARD_GRAVITY;
 use crate::vehicle::Vehicle;
+
+pub(crate) use at::At;
+pub use condition::{Condition, Fault, Payload};
+pub use limits::Limit;
+use parts::{suspension_forces, tyre_loads};
+use solver::Solution;
 
 /// Corner positions from the centre of gravity, x forward and y left [m].
 #[derive(Clone, Copy, Debug, PartialEq, Serialize, Deserialize)]
@@ -65,6 +75,8 @@ pub struct AccumulatorState {
     pub full_volume: f64,
     /// Absolute pressure below which it is empty of oil [Pa].
     pub empty_pressure: f64,
+    /// Gas volume at which the separator meets its end stop [m³].
+    pub least_volume: f64,
 }
 
 /// A slow line between two parts of the oil.
@@ -96,19 +108,30 @@ pub struct ClosedOff {
 
 /// Where and under which loads the vehicle stands.
 ///
-/// It is the design condition: no deflection, system pressures and temperature as the file gives
-/// them; oil under pressure above the atmosphere carries its share of each corner, the spring
-/// preload is what is left.
+/// At the design condition there is no deflection, system pressures and temperature are as the file gives them; oil
+/// under pressure above the atmosphere carries its share of each corner, the spring preload is what is left. Every other
+/// state is solved from these amounts of oil, gas and preload.
 #[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
 pub struct OperatingPoint {
     pub(crate) vehicle: Vehicle,
-    /// Heave z [m], pitch [rad], roll [rad] from the design condition.
+    /// The vehicle with what faults change.
+    pub(crate) car: Vehicle,
+    /// Share of its charge that each accumulator keeps.
+    pub(crate) charge: Vec<f64>,
+    pub(crate) solution: Solution,
+    /// The standing vehicle that a fast state starts from.
+    pub(crate) standing: Option<Solution>,
+    /// What it stands under.
+    pub condition: Condition,
+    /// Heave z [m], pitch [rad], roll [rad] of the body's centre of gravity from the design condition.
     pub attitude: [f64; 3],
+    /// Height of the wheels from the design condition [m].
+    pub wheels: PerCorner<f64>,
     /// Suspension deflection from the design condition, bump positive [m].
     pub deflection: PerCorner<f64>,
     /// Vertical tyre loads [N].
     pub tyre_load: PerCorner<f64>,
-    /// Sprung corner loads [N].
+    /// Suspension forces on the body [N].
     pub corner_load: PerCorner<f64>,
     /// Share of the corner load that the oil carries, at the wheel [N].
     pub oil_load: PerCorner<f64>,
@@ -116,12 +139,20 @@ pub struct OperatingPoint {
     pub spring_load: PerCorner<f64>,
     /// Force in the spring itself [N].
     pub spring_preload: PerCorner<f64>,
+    /// Share that the stops carry, at the wheel [N].
+    pub stop_load: PerCorner<f64>,
+    /// Travel of the pistons from mid-stroke, bump positive [m]; NaN without a cylinder.
+    pub piston_travel: PerCorner<f64>,
     /// Names of the circuits, in their order.
     pub circuits: Vec<String>,
     /// Absolute pressure of each circuit [Pa].
     pub pressure: Vec<f64>,
     /// Gas volume of each circuit [m³].
     pub gas_volume: Vec<f64>,
+    /// Oil volume added to each circuit since the design condition [m³].
+    pub oil_added: Vec<f64>,
+    /// Volume of the cavity in each circuit where oil has torn off [m³].
+    pub cavity: Vec<f64>,
     /// Accumulators, in the order of circuits and names.
     pub accumulators: Vec<AccumulatorState>,
     /// Lines that only balance slowly.
@@ -134,49 +165,119 @@ pub struct OperatingPoint {
     pub atmosphere: f64,
     /// Temperature of gas and oil [K].
     pub temperature: f64,
+    /// Margins to what limits the suspension; what is passed is marked.
+    pub limits: Vec<Limit>,
     /// What the engineer should know.
     pub warnings: Vec<String>,
 }
 
 impl Vehicle {
     /// The operating point at the design condition.
+    ///
+    /// # Errors
+    /// None that a valid vehicle brings about.
     pub fn settle(&self) -> Result<OperatingPoint> {
-        let (spec, numbers) = (self.spec(), self.numbers());
+        self.settle_under(&Condition::default())
+    }
+
+    /// The operating point under a condition.
+    ///
+    /// # Errors
+    /// [`Error::InvalidInput`](crate::Error::InvalidInput) with everything that is wrong with the condition;
+    /// [`Error::NotConverged`](crate::Error::NotConverged) with the last state where no equilibrium is found.
+    pub fn settle_under(&self, condition: &Condition) -> Result<OperatingPoint> {
+        condition.check(self)?;
+        let (car, charge) = condition.faulty(self)?;
+        let solved = at::solve(&car, condition, &charge, None)?;
+        Ok(OperatingPoint::new(self, car, charge, condition.clone(), solved))
+    }
+
+    /// The operating point of a load case of the file.
+    ///
+    /// # Errors
+    /// As [`settle_under`](Self::settle_under).
+    pub fn settle_case(&self, name: &str) -> Result<OperatingPoint> {
+        self.settle_under(&Condition::of_case(self, name)?)
+    }
+
+    /// Names of the load cases in the file, in their order.
+    pub fn cases(&self) -> Vec<&str> {
+        self.spec().cases.0.keys().map(String::as_str).collect()
+    }
+}
+
+impl OperatingPoint {
+    /// Reads off everything from a solution.
+    pub(crate) fn new(
+        vehicle: &Vehicle,
+        car: Vehicle,
+        charge: Vec<f64>,
+        condition: Condition,
+        (solution, standing): (Solution, Option<Solution>),
+    ) -> Self {
+        let (spec, numbers) = (car.spec(), car.numbers());
         let value = |slot: Slot| numbers[slot.0];
-        let network = &self.structure().network;
-        let (atmosphere, temperature) = (value(spec.atmosphere), value(spec.temperature));
-        let corner_load = corner_loads(spec, numbers);
-        // F_oil = Bᵀ (p − p_atm)
+        let network = &car.structure().network;
+        let at = At::new(&car, numbers, &condition, &charge, &solution, standing.as_ref());
+        let parts = &at.parts;
+        let atmosphere = value(spec.atmosphere);
+        let deflection = PerCorner(at.deflection);
+        let forces = suspension_forces(parts, &at.deflection, &at.pressure);
+        let spring_preload = PerCorner::new(|corner| {
+            let i = corner.index();
+            parts.corners[i].spring.as_ref().map_or(0.0, |spring| spring.force(at.deflection[i]))
+        });
+        let spring_load = PerCorner::new(|corner| {
+            let i = corner.index();
+            let part = &parts.corners[i];
+            part.spring
+                .as_ref()
+                .map_or(part.rest, |spring| spring.force(at.deflection[i]) * spring.lever.at(at.deflection[i]))
+        });
+        let stop_load = PerCorner::new(|corner| {
+            let i = corner.index();
+            parts.corners[i].stops.iter().flatten().map(|stop| stop.force(at.deflection[i]) * stop.ratio).sum()
+        });
         let mut oil_load = PerCorner([0.0; 4]);
-        for node in &network.nodes {
-            for chamber in &node.chambers {
-                oil_load[chamber.corner] += chamber.signed_area(spec, numbers) * (value(node.pressure) - atmosphere);
+        for (region, pressure) in parts.regions.iter().zip(&at.pressure) {
+            for chamber in &region.chambers {
+                let lever = chamber.lever.at(at.deflection[chamber.corner]);
+                oil_load.0[chamber.corner] += chamber.area * lever * (pressure - atmosphere);
             }
         }
-        let spring_load = PerCorner::new(|corner| corner_load[corner] - oil_load[corner]);
-        let spring = |corner| spec.corner(corner).and_then(|corner| corner.spring.as_ref());
-        let spring_preload = PerCorner::new(|corner| {
-            spring(corner).map_or(0.0, |spring| spring_load[corner] / value(spring.motion_ratio))
+        let piston_travel = PerCorner::new(|corner| {
+            let cylinder = spec.corner(corner).and_then(|corner| corner.cylinder.as_ref());
+            cylinder.map_or(f64::NAN, |cylinder| {
+                let (ratio, slope) = (value(cylinder.motion_ratio), value(cylinder.motion_ratio_slope));
+                deflection[corner] * (ratio + 0.5 * slope * deflection[corner])
+            })
         });
-        let tyre_load = PerCorner::new(|corner| {
-            let wheel = spec.corner(corner).map_or(0.0, |corner| value(corner.unsprung_mass));
-            corner_load[corner] + wheel * STANDARD_GRAVITY
-        });
+        let tyre_load = PerCorner(tyre_loads(parts, &solution.unknowns));
         let accumulators: Vec<AccumulatorState> = network
             .accumulators
             .iter()
-            .map(|accumulator| {
-                let gas = accumulator.gas(numbers, temperature);
-                AccumulatorState {
-                    name: accumulator.name.to_string(),
-                    pressure: value(accumulator.pressure),
-                    gas_volume: gas.volume,
-                    full_volume: gas.full,
-                    empty_pressure: gas.empty_pressure,
-                }
+            .enumerate()
+            .map(|(index, accumulator)| AccumulatorState {
+                name: accumulator.name.to_string(),
+                pressure: at.gas[index].pressure,
+                gas_volume: at.gas[index].volume,
+                full_volume: at.gas[index].full,
+                empty_pressure: at.gas[index].empty_pressure,
+                least_volume: value(accumulator.least_gas_volume),
             })
             .collect();
-        let mut gas_volume = vec![0.0; network.circuits.len()];
+        let count = network.circuits.len();
+        let (mut pressure, mut gas_volume) = (vec![0.0; count], vec![0.0; count]);
+        let (mut oil_added, mut cavity) = (vec![0.0; count], vec![0.0; count]);
+        for (region, &p) in parts.regions.iter().zip(&at.pressure) {
+            let pushed = region.pushed(&at.deflection);
+            for &circuit in &region.hubs {
+                pressure[circuit] = p;
+                let found = region.held.is_some();
+                oil_added[circuit] = if found { region.oil_to_add(p, pushed) } else { 0.0 } + region.added;
+                cavity[circuit] = region.cavity(p, pushed);
+            }
+        }
         for (reference, state) in network.accumulators.iter().zip(&accumulators) {
             gas_volume[reference.circuit] += state.gas_volume;
         }
@@ -186,69 +287,50 @@ impl Vehicle {
             let seals = corner.cylinder.as_ref().map(|own| value(own.friction) * value(own.motion_ratio));
             damper.unwrap_or(0.0) + seals.unwrap_or(0.0)
         });
-        let (slow_lines, closed_off) = lines_apart(network, &network.values(spec, numbers), numbers);
-        let mut warnings = Vec::new();
-        for corner in CORNERS {
-            let name = corner.name();
-            if corner_load[corner] <= 0.0 {
-                warnings
-                    .push(format!("{name}: the corner load is {:.0} N; the body would lift off", corner_load[corner]));
-            }
-            if spec.corner(corner).is_some_and(|corner| value(corner.tyre.rate) == 0.0) {
-                warnings.push(format!("{name}: the tyre has no rate, as off the ground; the loads are those on it"));
-            }
-            if spring(corner).is_none() {
-                if spring_load[corner].abs() > 1e-6 * corner_load[corner].abs() {
-                    warnings.push(format!(
-                        "{name}: the oil carries {:.0} N of {:.0} N and there is no spring for the rest; pressure {} by {:.1} %",
-                        oil_load[corner],
-                        corner_load[corner],
-                        if spring_load[corner] > 0.0 { "too low" } else { "too high" },
-                        100.0 * (spring_load[corner] / oil_load[corner]).abs()
-                    ));
-                }
-            } else if spring_load[corner] < 0.0 {
-                warnings.push(format!(
-                    "{name}: the oil carries {:.0} N, more than the corner's {:.0} N; the spring would have to pull",
-                    oil_load[corner], corner_load[corner]
-                ));
-            }
-        }
-        for state in &accumulators {
-            if state.pressure < state.empty_pressure {
-                warnings.push(format!(
-                    "{}: the system pressure {:.2} bar abs is below the precharge of {:.2} bar abs at this temperature; the accumulator is empty of oil and rigid",
-                    state.name,
-                    state.pressure / 1e5,
-                    state.empty_pressure / 1e5
-                ));
-            }
-        }
-        Ok(OperatingPoint {
-            vehicle: self.clone(),
-            attitude: [0.0; 3],
-            deflection: PerCorner([0.0; 4]),
+        let (slow_lines, closed_off) = lines_apart(network, &network.values(spec, numbers, &at.oil), &at.oil);
+        let mut point = Self {
+            vehicle: vehicle.clone(),
+            charge,
+            attitude: [solution.unknowns[0], solution.unknowns[1], solution.unknowns[2]],
+            wheels: PerCorner(std::array::from_fn(|i| solution.unknowns[3 + i])),
+            solution,
+            standing,
+            temperature: condition.temperature.unwrap_or_else(|| value(spec.temperature)),
+            condition,
+            deflection,
             tyre_load,
-            corner_load,
+            corner_load: PerCorner(forces),
             oil_load,
             spring_load,
             spring_preload,
-            circuits: network.circuits.iter().map(Arc::<str>::to_string).collect(),
-            pressure: network.pressures.iter().map(|&pressure| value(pressure)).collect(),
+            stop_load,
+            piston_travel,
+            circuits: network.circuits.iter().map(ToString::to_string).collect(),
+            pressure,
             gas_volume,
+            oil_added,
+            cavity,
             accumulators,
             slow_lines,
             closed_off,
             friction,
             atmosphere,
-            temperature,
-            warnings,
-        })
+            limits: Vec::new(),
+            warnings: Vec::new(),
+            car: car.clone(),
+        };
+        point.limits = limits::limits(&point);
+        point.warnings = limits::warnings(&point);
+        point
     }
 }
 
 // Slow lines with their time constants, and what shut lines close off.
-fn lines_apart(network: &Network, values: &NetworkValues<f64>, numbers: &[f64]) -> (Vec<SlowLine>, Vec<ClosedOff>) {
+fn lines_apart(
+    network: &Network,
+    values: &NetworkValues<f64>,
+    state: &OilState<f64>,
+) -> (Vec<SlowLine>, Vec<ClosedOff>) {
     let compliance = |region: &[usize], own: usize| -> f64 {
         (0..region.len()).filter(|&node| region[node] == own).map(|node| values.node_compliance(node)).sum()
     };
@@ -291,7 +373,7 @@ fn lines_apart(network: &Network, values: &NetworkValues<f64>, numbers: &[f64]) 
                 accumulators: gas.collect(),
                 lines,
                 nodes: names,
-                pressure: numbers[network.nodes[first].pressure.0],
+                pressure: state.pressure[first],
                 compliance: compliance(&region, own),
             })
         })
@@ -300,6 +382,11 @@ fn lines_apart(network: &Network, values: &NetworkValues<f64>, numbers: &[f64]) 
 }
 
 impl OperatingPoint {
+    /// The state with the vehicle's numbers in any scalar.
+    pub(crate) fn at<T: Scalar>(&self, numbers: &[T]) -> At<T> {
+        At::new(&self.car, numbers, &self.condition, &self.charge, &self.solution, self.standing.as_ref())
+    }
+
     /// What a linear result takes for granted here; `shut` where slow lines are.
     pub(crate) fn assumptions(&self, shut: bool) -> Vec<String> {
         let slow = self.slow_lines.iter().map(|line| {
@@ -310,8 +397,8 @@ impl OperatingPoint {
         closed.sort_unstable();
         closed.dedup();
         let closed = closed.into_iter().map(|line| format!("{line} is closed; the oil behind it is trapped"));
-        let network = &self.vehicle.structure().network;
-        let spec = self.vehicle.spec();
+        let network = &self.car.structure().network;
+        let spec = self.car.spec();
         let tables = CORNERS
             .iter()
             .filter_map(|&corner| spec.corner(corner))
