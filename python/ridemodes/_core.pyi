@@ -13,7 +13,7 @@ from numpy.typing import NDArray
 from os import PathLike
 from typing import Any, Final, SupportsFloat, SupportsIndex, final
 
-__all__ = ["CAUTION", "VERSION", "ClosedOff", "Decoupling", "Element", "LinearSystem", "Modes", "Motions", "OperatingPoint", "Parameter", "Sensitivities", "SlowLine", "StateSpace", "Sweep", "Table", "Vehicle", "example", "examples", "load", "loads", "schema"]
+__all__ = ["CAUTION", "VERSION", "ClosedOff", "Decoupling", "Element", "Fault", "Limit", "LinearSystem", "Modes", "Motions", "OperatingPoint", "Parameter", "Payload", "Sensitivities", "SlowLine", "StateSpace", "Sweep", "Table", "Vehicle", "example", "examples", "load", "loads", "schema"]
 
 CAUTION: Final[str]
 """
@@ -170,6 +170,137 @@ class Element:
     def stiffness(self, /) -> float:
         """
         Stiffness; of a store of volume its share of one over the node's compliance.
+        """
+
+@final
+class Fault:
+    """
+    Something that has failed: it changes the data a state is solved from.
+    """
+    def __copy__(self, /) -> Fault: ...
+    def __deepcopy__(self, /, _memo: Any) -> Fault: ...
+    def __eq__(self, other: object, /) -> bool: ...
+    def __reduce__(self, /) -> "tuple[object, tuple[bytes]]": ...
+    def __repr__(self, /) -> str: ...
+    @staticmethod
+    def _restore(data: bytes) -> Fault: ...
+    @staticmethod
+    def air(fraction: SupportsFloat | SupportsIndex) -> Fault:
+        """
+        Entrained air in the oil.
+
+        Parameters
+        ----------
+        fraction : float
+            Volume of air per volume of oil at atmospheric pressure.
+
+        Returns
+        -------
+        Fault
+        """
+    @staticmethod
+    def burst(circuit: str) -> Fault:
+        """
+        A burst line: the circuit's oil is at the pressure of the air.
+
+        Parameters
+        ----------
+        circuit : str
+            Name of the circuit.
+
+        Returns
+        -------
+        Fault
+        """
+    @staticmethod
+    def closed(way: str) -> Fault:
+        """
+        A way that is shut: a port, an accumulator's, or a line.
+
+        Parameters
+        ----------
+        way : str
+            Its path, e.g. ``circuits.left.chambers.front_left_bump``.
+
+        Returns
+        -------
+        Fault
+        """
+    @staticmethod
+    def lost_precharge(accumulator: str) -> Fault:
+        """
+        An accumulator without its charge: oil fills it, and nothing gives.
+
+        Parameters
+        ----------
+        accumulator : str
+            Its path, e.g. ``circuits.left.accumulators.main``.
+
+        Returns
+        -------
+        Fault
+        """
+    @property
+    def name(self, /) -> str:
+        """
+        The fault in words.
+        """
+    @staticmethod
+    def years(years: SupportsFloat | SupportsIndex) -> Fault:
+        """
+        Years of service without a check of the charge, at each accumulator's ``yearly_loss``.
+
+        Parameters
+        ----------
+        years : float
+            Years.
+
+        Returns
+        -------
+        Fault
+        """
+
+@final
+class Limit:
+    """
+    A limit with the margin to it.
+    """
+    def __copy__(self, /) -> Limit: ...
+    def __deepcopy__(self, /, _memo: Any) -> Limit: ...
+    def __eq__(self, other: object, /) -> bool: ...
+    def __reduce__(self, /) -> "tuple[object, tuple[bytes]]": ...
+    def __repr__(self, /) -> str: ...
+    @staticmethod
+    def _restore(data: bytes) -> Limit: ...
+    @property
+    def limit(self, /) -> float:
+        """
+        Where the limit is.
+        """
+    @property
+    def margin(self, /) -> float:
+        """
+        How far the state is from it; negative once it is passed.
+        """
+    @property
+    def name(self, /) -> str:
+        """
+        What it limits, e.g. ``front_left.lift_off``.
+        """
+    @property
+    def passed(self, /) -> bool:
+        """
+        Whether the state is beyond it.
+        """
+    @property
+    def unit(self, /) -> str:
+        """
+        Unit of both.
+        """
+    @property
+    def value(self, /) -> float:
+        """
+        Where the state stands.
         """
 
 @final
@@ -704,6 +835,11 @@ class OperatingPoint:
         Heave z [m], pitch [rad] and roll [rad] from the design condition.
         """
     @property
+    def cavity(self, /) -> NDArray[float64]:
+        """
+        Volume of the cavity in each circuit where oil has torn off [m^3].
+        """
+    @property
     def circuits(self, /) -> list[str]:
         """
         Names of the circuits.
@@ -733,9 +869,20 @@ class OperatingPoint:
         """
         Gas volume of each circuit [m^3].
         """
-    def linear(self, /) -> LinearSystem:
+    @property
+    def limits(self, /) -> dict[str, Limit]:
+        """
+        Margins to what limits the suspension, by name.
+        """
+    def linear(self, /, gravity: bool = False) -> LinearSystem:
         """
         The linear system about this operating point.
+
+        Parameters
+        ----------
+        gravity : bool
+            Whether the moment of the leaned body's weight is taken in, with roll about the roll axis; off, these are
+            the classical seven degrees of freedom.
 
         Returns
         -------
@@ -747,9 +894,24 @@ class OperatingPoint:
             Where incompressible oil has nowhere to go.
         """
     @property
+    def oil_added(self, /) -> NDArray[float64]:
+        """
+        Oil volume added to each circuit since the design condition [m^3].
+        """
+    @property
     def oil_load(self, /) -> NDArray[float64]:
         """
         Share of the corner loads that the oil carries, at the wheel [N].
+        """
+    @property
+    def passed(self, /) -> list[Limit]:
+        """
+        Limits that are passed.
+        """
+    @property
+    def piston_travel(self, /) -> NDArray[float64]:
+        """
+        Travel of the pistons from mid-stroke, bump positive [m]; NaN without a cylinder.
         """
     @property
     def pressure(self, /) -> NDArray[float64]:
@@ -770,6 +932,11 @@ class OperatingPoint:
     def spring_preload(self, /) -> NDArray[float64]:
         """
         Forces in the springs themselves [N].
+        """
+    @property
+    def stop_load(self, /) -> NDArray[float64]:
+        """
+        Share of the corner loads that the stops carry, at the wheel [N].
         """
     def table(self, /) -> Table:
         """
@@ -815,6 +982,11 @@ class OperatingPoint:
         """
         What the engineer should know, e.g. a spring that would have to pull.
         """
+    @property
+    def wheels(self, /) -> NDArray[float64]:
+        """
+        Heights of the wheels from the design condition [m].
+        """
 
 @final
 class Parameter:
@@ -850,6 +1022,51 @@ class Parameter:
     def value(self, /) -> float:
         """
         Value in SI.
+        """
+
+@final
+class Payload:
+    """
+    A point mass carried by the body.
+
+    Parameters
+    ----------
+    mass : float
+        Mass [kg].
+    x : float
+        Ahead of the body's centre of gravity [m].
+    y : float
+        To the left of it [m].
+    z : float
+        Above it [m].
+    """
+    def __copy__(self, /) -> Payload: ...
+    def __deepcopy__(self, /, _memo: Any) -> Payload: ...
+    def __eq__(self, other: object, /) -> bool: ...
+    def __new__(cls, /, mass: SupportsFloat | SupportsIndex, x: SupportsFloat | SupportsIndex = 0.0, y: SupportsFloat | SupportsIndex = 0.0, z: SupportsFloat | SupportsIndex = 0.0) -> Payload: ...
+    def __reduce__(self, /) -> "tuple[object, tuple[bytes]]": ...
+    def __repr__(self, /) -> str: ...
+    @staticmethod
+    def _restore(data: bytes) -> Payload: ...
+    @property
+    def mass(self, /) -> float:
+        """
+        Mass [kg].
+        """
+    @property
+    def x(self, /) -> float:
+        """
+        Ahead of the body's centre of gravity [m].
+        """
+    @property
+    def y(self, /) -> float:
+        """
+        To the left of the body's centre of gravity [m].
+        """
+    @property
+    def z(self, /) -> float:
+        """
+        Above the body's centre of gravity [m].
         """
 
 @final
@@ -1060,10 +1277,11 @@ class StateSpace:
 @final
 class Sweep:
     """
-    Modes along a sweep of one number, followed by shape.
+    States and modes along a sweep of one number or one load, modes followed by shape.
 
-    Arrays are branches x values, NaN where a branch is not there: a pair that turns into two real poles goes on as
-    one of them, and the other begins a branch.
+    Arrays of states are values x columns, NaN where a state does not settle (see `status`). Arrays of modes are
+    branches x values, NaN where a branch is not there: a pair that turns into two real poles goes on as one of them,
+    and the other begins a branch. Modes are computed when they are first asked for.
     """
     def __copy__(self, /) -> Sweep: ...
     def __deepcopy__(self, /, _memo: Any) -> Sweep: ...
@@ -1075,14 +1293,44 @@ class Sweep:
     @staticmethod
     def _restore(data: bytes) -> Sweep: ...
     @property
+    def attitude(self, /) -> NDArray[float64]:
+        """
+        Heave [m], pitch [rad] and roll [rad], values x 3.
+        """
+    @property
+    def circuits(self, /) -> list[str]:
+        """
+        Names of the circuits.
+        """
+    @property
+    def cross_weight(self, /) -> NDArray[float64]:
+        """
+        Cross weight of the tyre loads, (FR + RL) over all.
+        """
+    @property
     def damping_ratio(self, /) -> NDArray[float64]:
         """
         Damping ratios, branches x values [1].
         """
     @property
+    def deflection(self, /) -> NDArray[float64]:
+        """
+        Suspension deflections, values x 4 [m].
+        """
+    @property
     def frequency(self, /) -> NDArray[float64]:
         """
         Natural frequencies, branches x values [Hz].
+        """
+    @property
+    def front_transfer(self, /) -> NDArray[float64]:
+        """
+        Share of the lateral load transfer that the front axle takes; NaN without any.
+        """
+    @property
+    def gas_volume(self, /) -> NDArray[float64]:
+        """
+        Gas volumes, values x circuits [m^3].
         """
     @property
     def label(self, /) -> list[str]:
@@ -1100,9 +1348,14 @@ class Sweep:
         The modes at each value.
         """
     @property
+    def passed(self, /) -> list[list[str]]:
+        """
+        Names of the limits that are passed, at each value.
+        """
+    @property
     def path(self, /) -> str:
         """
-        Path that is varied.
+        Path or keyword that is varied.
         """
     @property
     def pole(self, /) -> NDArray[complex128]:
@@ -1110,9 +1363,19 @@ class Sweep:
         Poles, branches x values [rad/s].
         """
     @property
+    def pressure(self, /) -> NDArray[float64]:
+        """
+        Absolute pressures, values x circuits [Pa].
+        """
+    @property
     def row(self, /) -> NDArray[float64]:
         """
         Row of each branch in `modes`, branches x values, as floats; NaN where it is not there.
+        """
+    @property
+    def status(self, /) -> list[str]:
+        """
+        ``solved``, or the name of the error, at each value.
         """
     def table(self, /) -> Table:
         """
@@ -1129,6 +1392,11 @@ class Sweep:
         Returns
         -------
         xarray.Dataset
+        """
+    @property
+    def tyre_load(self, /) -> NDArray[float64]:
+        """
+        Tyre loads, values x 4 [N].
         """
     @property
     def unit(self, /) -> str:
@@ -1172,6 +1440,11 @@ class Vehicle:
     def __repr__(self, /) -> str: ...
     def __str__(self, /) -> str: ...
     def _repr_html_(self, /) -> str: ...
+    @property
+    def cases(self, /) -> list[str]:
+        """
+        Names of the load cases in the file.
+        """
     @property
     def circuits(self, /) -> list[str]:
         """
@@ -1253,24 +1526,91 @@ class Vehicle:
         """
         Names of the settings in the file.
         """
-    def settle(self, /) -> OperatingPoint:
+    def settle(self, /, *, lateral: SupportsFloat | SupportsIndex = 0.0, longitudinal: SupportsFloat | SupportsIndex = 0.0, vertical: SupportsFloat | SupportsIndex = 0.0, payload: "Payload | collections.abc.Sequence[Payload] | None" = None, temperature: SupportsFloat | SupportsIndex | None = None, heights: "collections.abc.Sequence[float] | None" = None, downforce: "tuple[float, float] | None" = None, side_slope: SupportsFloat | SupportsIndex = 0.0, grade: SupportsFloat | SupportsIndex = 0.0, spring_seat: "collections.abc.Sequence[float] | None" = None, oil: "dict[str, float] | None" = None, pressure: "dict[str, float] | None" = None, levelled: bool = False, fault: "Fault | collections.abc.Sequence[Fault] | None" = None, fast: bool = False) -> "OperatingPoint":
         """
-        The operating point at the design condition.
+        The operating point; without arguments that of the design condition.
+
+        Parameters
+        ----------
+        lateral : float
+            Acceleration to the left [m/s^2].
+        longitudinal : float
+            Acceleration forward [m/s^2].
+        vertical : float
+            Acceleration upwards, added to gravity [m/s^2].
+        payload : Payload or list of Payload, optional
+            Point masses carried.
+        temperature : float, optional
+            Temperature of gas and oil [K].
+        heights : sequence of 4 floats, optional
+            Height of the ground under each wheel [m].
+        downforce : (float, float), optional
+            Aerodynamic load front and rear, downwards [N].
+        side_slope : float
+            Slope of the ground across, left side higher [rad].
+        grade : float
+            Slope of the ground ahead, uphill [rad].
+        spring_seat : sequence of 4 floats, optional
+            Lift of the spring seats, which compresses the springs [m of spring travel].
+        oil : mapping of str to float, optional
+            Oil added per circuit [m^3]; springs are held, the height follows.
+        pressure : mapping of str to float, optional
+            Pressure that circuits are brought to [Pa, absolute]; springs are held, height and oil follow.
+        levelled : bool
+            Whether every circuit's chambers are brought back to their design volume; the oil that takes is found.
+        fault : Fault or list of Fault, optional
+            What has failed.
+        fast : bool
+            Whether the gas exchanges no heat from the standing vehicle (without accelerations, slopes, heights and
+            aerodynamic load) to this state; slow lines are shut then.
 
         Returns
         -------
         OperatingPoint
+
+        Raises
+        ------
+        InvalidInput
+            With everything that is wrong with the condition.
+        NotConverged
+            Where no equilibrium is found; with the last state.
         """
-    def sweep(self, /, path: str, values: "numpy.typing.ArrayLike") -> "Sweep":
+    def settle_case(self, /, name: str) -> OperatingPoint:
         """
-        Varies one number and follows every mode by shape, halving steps that leave it unclear.
+        The operating point of a load case of the file.
+
+        Parameters
+        ----------
+        name : str
+            One of `cases`.
+
+        Returns
+        -------
+        OperatingPoint
+
+        Raises
+        ------
+        InvalidInput
+            For a name that is not known.
+        NotConverged
+            Where no equilibrium is found.
+        """
+    def sweep(self, /, path: str, values: "numpy.typing.ArrayLike", **condition: "typing.Any") -> "Sweep":
+        """
+        Varies one number, or one load, and follows the states and every mode by shape.
+
+        Modes are computed when they are first asked for.
 
         Parameters
         ----------
         path : str
-            Path of the number.
+            Path of the number, or a keyword of `settle`: ``lateral``, ``temperature``, ``heights.front_left``,
+            ``heights.twist`` (h times 1, -1, -1, 1), ``downforce.front``, ``payload.mass`` (of the first),
+            ``oil.left`` and the like.
         values : array_like
             Its values, in SI, in the order to be followed.
+        **condition
+            Further keywords of `settle` that hold all along.
 
         Returns
         -------

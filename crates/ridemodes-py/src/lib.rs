@@ -1,6 +1,7 @@
 //! Python binding of `ridemodes`: extract, detach, call one core function, wrap.
 
 mod arrays;
+mod condition;
 mod convert;
 mod errors;
 mod linear;
@@ -18,13 +19,15 @@ mod _core {
     use pyo3::prelude::*;
 
     #[pymodule_export]
+    use crate::condition::{Fault, Payload};
+    #[pymodule_export]
     use crate::linear::{Element, LinearSystem, StateSpace};
     #[pymodule_export]
     use crate::modes::Modes;
     #[pymodule_export]
     use crate::motions::Motions;
     #[pymodule_export]
-    use crate::point::{ClosedOff, OperatingPoint, SlowLine};
+    use crate::point::{ClosedOff, Limit, OperatingPoint, SlowLine};
     #[pymodule_export]
     use crate::sensitivities::Sensitivities;
     #[pymodule_export]

@@ -1,7 +1,7 @@
 //! The operating point.
 
 use pyo3::prelude::*;
-use ridemodes::{ClosedOff as ClosedOffCore, OperatingPoint as Core, SlowLine as SlowLineCore};
+use ridemodes::{ClosedOff as ClosedOffCore, Limit as LimitCore, OperatingPoint as Core, SlowLine as SlowLineCore};
 
 use crate::arrays::{Kept, Real, vector};
 use crate::errors::{labelled, raise};
@@ -99,6 +99,64 @@ plain_class! {
     }
 }
 
+/// A limit with the margin to it.
+#[pyclass(frozen, module = "ridemodes")]
+pub(crate) struct Limit {
+    core: LimitCore,
+}
+
+impl Limit {
+    fn new(core: LimitCore) -> Self {
+        Self { core }
+    }
+
+    fn text(&self) -> PyResult<String> {
+        let LimitCore { name, value, limit, unit, .. } = &self.core;
+        let word = if self.core.is_passed() { "passed" } else { "kept" };
+        Ok(format!("Limit({name}: {value:.5e} against {limit:.5e} {unit}, {word})"))
+    }
+}
+
+plain_class! {
+    Limit, LimitCore;
+
+    /// What it limits, e.g. ``front_left.lift_off``.
+    #[getter]
+    fn name(&self) -> &str {
+        &self.core.name
+    }
+
+    /// Where the state stands.
+    #[getter]
+    fn value(&self) -> f64 {
+        self.core.value
+    }
+
+    /// Where the limit is.
+    #[getter]
+    fn limit(&self) -> f64 {
+        self.core.limit
+    }
+
+    /// Unit of both.
+    #[getter]
+    fn unit(&self) -> &str {
+        &self.core.unit
+    }
+
+    /// How far the state is from it; negative once it is passed.
+    #[getter]
+    fn margin(&self) -> f64 {
+        self.core.margin
+    }
+
+    /// Whether the state is beyond it.
+    #[getter]
+    fn passed(&self) -> bool {
+        self.core.is_passed()
+    }
+}
+
 /// Where and under which loads the vehicle stands.
 ///
 /// Corners come in the order front left, front right, rear left, rear right; circuits by name.
@@ -115,6 +173,11 @@ pub(crate) struct OperatingPoint {
     pressure: Kept,
     gas_volume: Kept,
     friction: Kept,
+    wheels: Kept,
+    stop_load: Kept,
+    piston_travel: Kept,
+    oil_added: Kept,
+    cavity: Kept,
 }
 
 impl OperatingPoint {
@@ -131,6 +194,11 @@ impl OperatingPoint {
             pressure: Kept::default(),
             gas_volume: Kept::default(),
             friction: Kept::default(),
+            wheels: Kept::default(),
+            stop_load: Kept::default(),
+            piston_travel: Kept::default(),
+            oil_added: Kept::default(),
+            cavity: Kept::default(),
         }
     }
 
@@ -208,6 +276,48 @@ result_class! {
         self.gas_volume.real(py, || Ok(vector(&self.core.gas_volume)))
     }
 
+    /// Heights of the wheels from the design condition [m].
+    #[getter]
+    fn wheels<'py>(&self, py: Python<'py>) -> PyResult<Real<'py>> {
+        self.wheels.real(py, || Ok(vector(self.core.wheels.as_array())))
+    }
+
+    /// Share of the corner loads that the stops carry, at the wheel [N].
+    #[getter]
+    fn stop_load<'py>(&self, py: Python<'py>) -> PyResult<Real<'py>> {
+        self.stop_load.real(py, || Ok(vector(self.core.stop_load.as_array())))
+    }
+
+    /// Travel of the pistons from mid-stroke, bump positive [m]; NaN without a cylinder.
+    #[getter]
+    fn piston_travel<'py>(&self, py: Python<'py>) -> PyResult<Real<'py>> {
+        self.piston_travel.real(py, || Ok(vector(self.core.piston_travel.as_array())))
+    }
+
+    /// Oil volume added to each circuit since the design condition [m^3].
+    #[getter]
+    fn oil_added<'py>(&self, py: Python<'py>) -> PyResult<Real<'py>> {
+        self.oil_added.real(py, || Ok(vector(&self.core.oil_added)))
+    }
+
+    /// Volume of the cavity in each circuit where oil has torn off [m^3].
+    #[getter]
+    fn cavity<'py>(&self, py: Python<'py>) -> PyResult<Real<'py>> {
+        self.cavity.real(py, || Ok(vector(&self.core.cavity)))
+    }
+
+    /// Margins to what limits the suspension, by name.
+    #[getter]
+    fn limits(&self) -> std::collections::BTreeMap<String, Limit> {
+        self.core.limits.iter().map(|limit| (limit.name.clone(), Limit::new(limit.clone()))).collect()
+    }
+
+    /// Limits that are passed.
+    #[getter]
+    fn passed(&self) -> Vec<Limit> {
+        self.core.limits.iter().filter(|limit| limit.is_passed()).cloned().map(Limit::new).collect()
+    }
+
     /// Lines that only balance slowly.
     #[getter]
     fn slow_lines(&self) -> Vec<SlowLine> {
@@ -246,6 +356,12 @@ result_class! {
 
     /// The linear system about this operating point.
     ///
+    /// Parameters
+    /// ----------
+    /// gravity : bool
+    ///     Whether the moment of the leaned body's weight is taken in, with roll about the roll axis; off, these are
+    ///     the classical seven degrees of freedom.
+    ///
     /// Returns
     /// -------
     /// LinearSystem
@@ -254,8 +370,10 @@ result_class! {
     /// ------
     /// Singular
     ///     Where incompressible oil has nowhere to go.
-    fn linear(&self, py: Python<'_>) -> PyResult<LinearSystem> {
-        py.detach(|| self.core.linear()).map(LinearSystem::new).map_err(raise)
+    #[pyo3(signature = (gravity=false))]
+    fn linear(&self, py: Python<'_>, gravity: bool) -> PyResult<LinearSystem> {
+        let linear = || if gravity { self.core.linear_with_gravity() } else { self.core.linear() };
+        py.detach(linear).map(LinearSystem::new).map_err(raise)
     }
 
     /// Corner loads and circuits as a table.

@@ -1,16 +1,18 @@
 //! The vehicle.
 
+use std::collections::BTreeMap;
 use std::path::PathBuf;
 
 use pyo3::prelude::*;
-use pyo3::types::PyMapping;
+use pyo3::types::{PyDict, PyMapping};
 use ridemodes::Vehicle as Core;
 use serde_json::Value;
 
+use crate::condition::Given;
 use crate::convert::{numbers, python, tree};
 use crate::errors::raise;
 use crate::point::OperatingPoint;
-use crate::studies::{Decoupling, Sweep};
+use crate::studies::{Decoupling, Sweep, SweepCore};
 use crate::table::Table;
 
 /// Reads a vehicle file.
@@ -320,23 +322,138 @@ impl Vehicle {
         py.detach(|| self.0.with_setting(name)).map(Self).map_err(raise)
     }
 
-    /// The operating point at the design condition.
+    /// Names of the load cases in the file.
+    #[getter]
+    fn cases(&self) -> Vec<&str> {
+        self.0.cases()
+    }
+
+    /// The operating point; without arguments that of the design condition.
+    ///
+    /// Parameters
+    /// ----------
+    /// lateral : float
+    ///     Acceleration to the left [m/s^2].
+    /// longitudinal : float
+    ///     Acceleration forward [m/s^2].
+    /// vertical : float
+    ///     Acceleration upwards, added to gravity [m/s^2].
+    /// payload : Payload or list of Payload, optional
+    ///     Point masses carried.
+    /// temperature : float, optional
+    ///     Temperature of gas and oil [K].
+    /// heights : sequence of 4 floats, optional
+    ///     Height of the ground under each wheel [m].
+    /// downforce : (float, float), optional
+    ///     Aerodynamic load front and rear, downwards [N].
+    /// side_slope : float
+    ///     Slope of the ground across, left side higher [rad].
+    /// grade : float
+    ///     Slope of the ground ahead, uphill [rad].
+    /// spring_seat : sequence of 4 floats, optional
+    ///     Lift of the spring seats, which compresses the springs [m of spring travel].
+    /// oil : mapping of str to float, optional
+    ///     Oil added per circuit [m^3]; springs are held, the height follows.
+    /// pressure : mapping of str to float, optional
+    ///     Pressure that circuits are brought to [Pa, absolute]; springs are held, height and oil follow.
+    /// levelled : bool
+    ///     Whether every circuit's chambers are brought back to their design volume; the oil that takes is found.
+    /// fault : Fault or list of Fault, optional
+    ///     What has failed.
+    /// fast : bool
+    ///     Whether the gas exchanges no heat from the standing vehicle (without accelerations, slopes, heights and
+    ///     aerodynamic load) to this state; slow lines are shut then.
     ///
     /// Returns
     /// -------
     /// OperatingPoint
-    fn settle(&self, py: Python<'_>) -> PyResult<OperatingPoint> {
-        py.detach(|| self.0.settle()).map(OperatingPoint::new).map_err(raise)
+    ///
+    /// Raises
+    /// ------
+    /// InvalidInput
+    ///     With everything that is wrong with the condition.
+    /// NotConverged
+    ///     Where no equilibrium is found; with the last state.
+    #[expect(clippy::too_many_arguments, reason = "one keyword each")]
+    #[pyo3(signature = (*, lateral=0.0, longitudinal=0.0, vertical=0.0,
+        payload: "Payload | collections.abc.Sequence[Payload] | None" = None, temperature=None,
+        heights: "collections.abc.Sequence[float] | None" = None,
+        downforce: "tuple[float, float] | None" = None, side_slope=0.0, grade=0.0,
+        spring_seat: "collections.abc.Sequence[float] | None" = None,
+        oil: "dict[str, float] | None" = None, pressure: "dict[str, float] | None" = None, levelled=false,
+        fault: "Fault | collections.abc.Sequence[Fault] | None" = None, fast=false) -> "OperatingPoint")]
+    fn settle(
+        &self,
+        py: Python<'_>,
+        lateral: f64,
+        longitudinal: f64,
+        vertical: f64,
+        payload: Option<Bound<'_, PyAny>>,
+        temperature: Option<f64>,
+        heights: Option<[f64; 4]>,
+        downforce: Option<(f64, f64)>,
+        side_slope: f64,
+        grade: f64,
+        spring_seat: Option<[f64; 4]>,
+        oil: Option<BTreeMap<String, f64>>,
+        pressure: Option<BTreeMap<String, f64>>,
+        levelled: bool,
+        fault: Option<Bound<'_, PyAny>>,
+        fast: bool,
+    ) -> PyResult<OperatingPoint> {
+        let numbers = [lateral, longitudinal, vertical, side_slope, grade];
+        let given = Given {
+            numbers,
+            temperature,
+            payload,
+            heights,
+            downforce,
+            spring_seat,
+            oil,
+            pressure,
+            levelled,
+            fault,
+            fast,
+        };
+        let condition = given.condition()?;
+        py.detach(|| self.0.settle_under(&condition)).map(OperatingPoint::new).map_err(raise)
     }
 
-    /// Varies one number and follows every mode by shape, halving steps that leave it unclear.
+    /// The operating point of a load case of the file.
+    ///
+    /// Parameters
+    /// ----------
+    /// name : str
+    ///     One of `cases`.
+    ///
+    /// Returns
+    /// -------
+    /// OperatingPoint
+    ///
+    /// Raises
+    /// ------
+    /// InvalidInput
+    ///     For a name that is not known.
+    /// NotConverged
+    ///     Where no equilibrium is found.
+    fn settle_case(&self, py: Python<'_>, name: &str) -> PyResult<OperatingPoint> {
+        py.detach(|| self.0.settle_case(name)).map(OperatingPoint::new).map_err(raise)
+    }
+
+    /// Varies one number, or one load, and follows the states and every mode by shape.
+    ///
+    /// Modes are computed when they are first asked for.
     ///
     /// Parameters
     /// ----------
     /// path : str
-    ///     Path of the number.
+    ///     Path of the number, or a keyword of `settle`: ``lateral``, ``temperature``, ``heights.front_left``,
+    ///     ``heights.twist`` (h times 1, -1, -1, 1), ``downforce.front``, ``payload.mass`` (of the first),
+    ///     ``oil.left`` and the like.
     /// values : array_like
     ///     Its values, in SI, in the order to be followed.
+    /// **condition
+    ///     Further keywords of `settle` that hold all along.
     ///
     /// Returns
     /// -------
@@ -346,10 +463,18 @@ impl Vehicle {
     /// ------
     /// InvalidInput
     ///     For an unknown path, or values out of their bounds; nothing is computed then.
-    #[pyo3(signature = (path, values: "numpy.typing.ArrayLike") -> "Sweep")]
-    fn sweep(&self, py: Python<'_>, path: &str, values: &Bound<'_, PyAny>) -> PyResult<Sweep> {
+    #[pyo3(signature = (path, values: "numpy.typing.ArrayLike", **condition: "typing.Any") -> "Sweep")]
+    fn sweep(
+        &self,
+        py: Python<'_>,
+        path: &str,
+        values: &Bound<'_, PyAny>,
+        condition: Option<&Bound<'_, PyDict>>,
+    ) -> PyResult<Sweep> {
         let values = numbers(values)?;
-        py.detach(|| self.0.sweep(path, &values)).map(Sweep::new).map_err(raise)
+        let condition = Given::from_keywords(condition, "sweep")?.condition()?;
+        let states = py.detach(|| self.0.states(path, &values, &condition)).map_err(raise)?;
+        Ok(Sweep::new(SweepCore { car: self.0.clone(), condition, states }))
     }
 
     /// For every number the value that would decouple two motions in stiffness, solved one number at a time.

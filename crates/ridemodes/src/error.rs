@@ -116,6 +116,17 @@ fn list(violations: &[Violation]) -> String {
 }
 
 impl Error {
+    /// The error's name, as a status.
+    pub fn name(&self) -> &'static str {
+        match self {
+            Self::InvalidInput { .. } => "InvalidInput",
+            Self::Parse { .. } => "ParseError",
+            Self::Singular { .. } => "Singular",
+            Self::NotConverged { .. } => "NotConverged",
+            Self::File { .. } => "OSError",
+        }
+    }
+
     pub(crate) fn invalid(violation: Violation) -> Self {
         Self::InvalidInput { violations: vec![violation] }
     }

@@ -4,9 +4,11 @@ use ndarray::Array2;
 use num_complex::Complex64;
 use serde::{Deserialize, Serialize};
 
-use crate::error::{Error, Result, Violation};
+use crate::error::Result;
 use crate::modes::Modes;
 use crate::numerics::best_assignment;
+use crate::states::{check, unit_of, varied};
+use crate::statics::Condition;
 use crate::system::LinearSystem;
 use crate::vehicle::Vehicle;
 
@@ -50,8 +52,9 @@ struct Station {
 }
 
 impl Vehicle {
-    fn station(&self, path: &str, value: f64) -> Result<Station> {
-        let system = self.with_values([(path, value)])?.settle()?.linear()?;
+    fn station(&self, path: &str, value: f64, base: &Condition) -> Result<Station> {
+        let (car, condition) = varied(self, base, path, value)?;
+        let system = car.settle_near(&condition, None)?.linear()?;
         let modes = system.modes()?;
         Ok(Station { value, system, modes })
     }
@@ -59,30 +62,28 @@ impl Vehicle {
     /// Varies the number at a path and follows every mode by shape, halving steps that leave it unclear.
     ///
     /// # Errors
-    /// [`Error::InvalidInput`] for an unknown path or a value out of its bounds; nothing is computed then.
+    /// [`Error::InvalidInput`](crate::Error::InvalidInput) for an unknown path or a value out of its bounds; nothing is
+    /// computed then.
     pub fn sweep(&self, path: &str, values: &[f64]) -> Result<Sweep> {
-        let unit = self.parameters().into_iter().find(|parameter| parameter.path == path);
-        let unit = unit.map_or_else(String::new, |parameter| parameter.unit.to_owned());
-        let mut violations: Vec<Violation> = Vec::new();
-        for &value in values {
-            if let Err(Error::InvalidInput { violations: wrong }) = self.with_values([(path, value)]) {
-                for violation in wrong {
-                    if !violations.contains(&violation) {
-                        violations.push(violation);
-                    }
-                }
-            }
-        }
-        crate::error::refuse(violations)?;
+        self.sweep_under(path, values, &Condition::default())
+    }
+
+    /// The same under a condition; `path` may be one of its keywords, see [`states`](Self::states).
+    ///
+    /// # Errors
+    /// As [`sweep`](Self::sweep), and where a state does not settle.
+    pub fn sweep_under(&self, path: &str, values: &[f64], base: &Condition) -> Result<Sweep> {
+        check(self, base, path, values)?;
+        let unit = unit_of(self, path);
         let mut stations: Vec<Station> = Vec::with_capacity(values.len());
         // branches[b][k]: row of branch b at value k
         let mut branches: Vec<Vec<Option<usize>>> = Vec::new();
         let mut likeness: Vec<f64> = Vec::new();
         let mut label: Vec<String> = Vec::new();
         for (place, &value) in values.iter().enumerate() {
-            let next = self.station(path, value)?;
+            let next = self.station(path, value, base)?;
             let links = match stations.last() {
-                Some(last) => self.follow(path, last, &next, HALVINGS)?,
+                Some(last) => self.follow(path, base, last, &next, HALVINGS)?,
                 None => Vec::new(),
             };
             let mut taken = vec![false; next.modes.len()];
@@ -128,15 +129,22 @@ impl Vehicle {
     }
 
     // For each row at one station its row at the next and the least likeness on the way.
-    fn follow(&self, path: &str, from: &Station, to: &Station, halvings: usize) -> Result<Vec<Option<(usize, f64)>>> {
+    fn follow(
+        &self,
+        path: &str,
+        base: &Condition,
+        from: &Station,
+        to: &Station,
+        halvings: usize,
+    ) -> Result<Vec<Option<(usize, f64)>>> {
         let links = link(from, to);
         let unclear = links.iter().flatten().any(|&(_, alike)| alike < CLEAR);
         if !unclear || halvings == 0 {
             return Ok(links);
         }
-        let middle = self.station(path, 0.5 * (from.value + to.value))?;
-        let first = self.follow(path, from, &middle, halvings - 1)?;
-        let second = self.follow(path, &middle, to, halvings - 1)?;
+        let middle = self.station(path, 0.5 * (from.value + to.value), base)?;
+        let first = self.follow(path, base, from, &middle, halvings - 1)?;
+        let second = self.follow(path, base, &middle, to, halvings - 1)?;
         Ok(first
             .into_iter()
             .map(|link| {

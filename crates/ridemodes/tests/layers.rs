@@ -4,13 +4,14 @@ use std::fs;
 use std::path::{Path, PathBuf};
 
 /// Modules of `src` from the lowest layer to the highest; those of one layer stand in one row.
-const LAYERS: [&[&str]; 11] = [
+const LAYERS: [&[&str]; 12] = [
     &["error", "axes", "units", "numerics"],
     &["spec"],
     &["equivalent", "gas"],
     &["hydraulics"],
     &["vehicle"],
     &["statics"],
+    &["states"],
     &["system"],
     &["corner_motions", "modes"],
     &["decoupling", "sensitivities", "sweep"],

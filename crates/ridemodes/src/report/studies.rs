@@ -2,6 +2,7 @@
 
 use super::{Table, fixed, percent};
 use crate::decoupling::Decoupling;
+use crate::states::States;
 use crate::sweep::Sweep;
 
 impl Decoupling {
@@ -29,6 +30,41 @@ impl Decoupling {
             ]);
         }
         table.note("one number at a time, within its bounds and a thousandth to a thousand times its value; the design height is held")
+    }
+}
+
+impl States {
+    /// The first and the last state, and where limits are passed.
+    pub fn table(&self) -> Table {
+        let mut table = Table::new(
+            format!("States along {} [{}], {} values", self.path, self.unit, self.values.len()),
+            &["value", "heave mm", "pitch deg", "roll deg", "FL N", "FR N", "RL N", "RR N", "status"],
+        );
+        let count = self.values.len();
+        let rows: Vec<usize> = match count {
+            0..=12 => (0..count).collect(),
+            _ => (0..12).map(|k| k * (count - 1) / 11).collect(),
+        };
+        for row in rows {
+            let mut cells = vec![
+                format!("{:.4}", self.values[row]),
+                fixed(1e3 * self.attitude[(row, 0)], 1),
+                fixed(self.attitude[(row, 1)].to_degrees(), 2),
+                fixed(self.attitude[(row, 2)].to_degrees(), 2),
+            ];
+            cells.extend((0..4).map(|i| fixed(self.tyre_load[(row, i)], 0)));
+            cells.push(self.status[row].clone());
+            table.row(cells);
+        }
+        let mut first: Vec<(String, f64)> = Vec::new();
+        for (row, passed) in self.passed.iter().enumerate() {
+            for name in passed {
+                if !first.iter().any(|(known, _)| known == name) {
+                    first.push((name.clone(), self.values[row]));
+                }
+            }
+        }
+        first.into_iter().fold(table, |table, (name, value)| table.note(format!("{name} is passed from {value:.4} on")))
     }
 }
 

@@ -394,7 +394,7 @@ fn level(
             let area: f64 = template.regions[k].chambers.iter().map(|chamber| chamber.area.abs()).sum();
             v.abs() / area
         });
-        if travelled.fold(0.0, f64::max) <= 1e-12 {
+        if travelled.fold(0.0, f64::max) <= 1e-10 {
             return Ok(here);
         }
         let mut slope = nalgebra::DMatrix::zeros(active.len(), active.len());

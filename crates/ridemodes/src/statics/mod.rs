@@ -187,8 +187,13 @@ impl Vehicle {
     /// [`Error::NotConverged`](crate::Error::NotConverged) with the last state where no equilibrium is found.
     pub fn settle_under(&self, condition: &Condition) -> Result<OperatingPoint> {
         condition.check(self)?;
+        self.settle_near(condition, None)
+    }
+
+    /// The same for a condition that has been checked, from a state nearby.
+    pub(crate) fn settle_near(&self, condition: &Condition, near: Option<&OperatingPoint>) -> Result<OperatingPoint> {
         let (car, charge) = condition.faulty(self)?;
-        let solved = at::solve(&car, condition, &charge, None)?;
+        let solved = at::solve(&car, condition, &charge, near.map(|point| &point.solution))?;
         Ok(OperatingPoint::new(self, car, charge, condition.clone(), solved))
     }
 
@@ -382,6 +387,20 @@ fn lines_apart(
 }
 
 impl OperatingPoint {
+    /// Share of the lateral load transfer that the front axle takes; NaN without any.
+    pub fn front_transfer(&self) -> f64 {
+        let load = self.tyre_load.as_array();
+        let (front, rear) = (load[1] - load[0], load[3] - load[2]);
+        let total = front + rear;
+        if total.abs() > 1e-9 * load.iter().sum::<f64>() { front / total } else { f64::NAN }
+    }
+
+    /// Cross weight (FR + RL)/ΣF of the tyre loads.
+    pub fn cross_weight(&self) -> f64 {
+        let load = self.tyre_load.as_array();
+        (load[1] + load[2]) / load.iter().sum::<f64>()
+    }
+
     /// The state with the vehicle's numbers in any scalar.
     pub(crate) fn at<T: Scalar>(&self, numbers: &[T]) -> At<T> {
         At::new(&self.car, numbers, &self.condition, &self.charge, &self.solution, self.standing.as_ref())

@@ -243,7 +243,7 @@ impl<T: Scalar> Region<T> {
 
     /// Volume of the cavity where the oil has torn off [m³].
     pub(crate) fn cavity(&self, pressure: f64, pushed: f64) -> f64 {
-        if self.held.is_some() { 0.0 } else { (-self.plain().excess(pressure, pushed)).max(0.0) }
+        if self.held.is_some() || pressure > VACUUM { 0.0 } else { (-self.plain().excess(pressure, pushed)).max(0.0) }
     }
 
     /// What the balance of volumes misses at a pressure, in the scalar [m³].

@@ -40,7 +40,10 @@ pub(crate) fn assemble<T: Scalar>(
     let oil = network.values(spec, numbers, &state);
     // Branches on a value are decided in f64.
     let shut = slow == SlowLines::Shut;
-    let open: Vec<bool> = oil.lines.iter().map(|line| !(line.closed || shut && line.slow)).collect();
+    // In a burst circuit all is at the pressure of the air: its lines move nothing that is felt.
+    let burst = |line: usize| at.open.get(network.lines[line].from).is_some_and(|&open| open);
+    let open: Vec<bool> =
+        oil.lines.iter().enumerate().map(|(index, line)| !(line.closed || shut && line.slow || burst(index))).collect();
     let mut ideal: Vec<bool> = oil.lines.iter().map(|line| line.is_ideal()).collect();
     keep_apart(network, &relaxing, &open, &mut ideal);
     let inertial: Vec<bool> = oil.lines.iter().map(|line| line.inertance.value() > 0.0).collect();
