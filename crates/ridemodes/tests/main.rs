@@ -8,6 +8,7 @@ mod cases;
 mod coupling;
 mod decouplings;
 mod elements;
+mod equilibrium;
 mod extremes;
 mod faults;
 mod file;

@@ -386,6 +386,7 @@ fn level(
         let pushed = active.iter().map(|&k| template.regions[k].pushed(&deflection)).collect();
         Ok((solution, pushed))
     };
+    const CHANGE: f64 = 1e-4;
     for _ in 0..30 {
         let (solution, pushed) = state(&pressure, &here)?;
         here = solution;
@@ -400,16 +401,17 @@ fn level(
         let mut slope = nalgebra::DMatrix::zeros(active.len(), active.len());
         for (column, &k) in active.iter().enumerate() {
             let mut moved = pressure.clone();
-            let change = 1e-4 * moved[k];
-            moved[k] += change;
+            moved[k] *= 1.0 + CHANGE;
             let (_, other) = state(&moved, &here)?;
             for row in 0..active.len() {
-                slope[(row, column)] = (other[row] - pushed[row]) / change;
+                slope[(row, column)] = (other[row] - pushed[row]) / CHANGE;
             }
         }
-        let Some(step) = slope.svd(true, true).solve(&missing, 1e-9).ok() else { break };
+        // Circuits that level the same motion leave a direction free: the least change is taken.
+        let least = 1e-9 * slope.amax();
+        let Some(step) = slope.svd(true, true).solve(&missing, least).ok() else { break };
         for (&k, change) in active.iter().zip(step.iter()) {
-            pressure[k] = (pressure[k] - change).clamp(0.2 * pressure[k], 5.0 * pressure[k]);
+            pressure[k] *= (1.0 - change).clamp(0.2, 5.0);
         }
     }
     Err(Error::NotConverged {
