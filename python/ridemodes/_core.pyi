@@ -13,7 +13,7 @@ from numpy.typing import NDArray
 from os import PathLike
 from typing import Any, Final, SupportsFloat, SupportsIndex, final
 
-__all__ = ["CAUTION", "VERSION", "ClosedOff", "Decoupling", "Element", "Fault", "Limit", "LinearSystem", "Modes", "Motions", "OperatingPoint", "Parameter", "Payload", "Sensitivities", "SlowLine", "StateSpace", "Sweep", "Table", "Vehicle", "example", "examples", "load", "loads", "schema"]
+__all__ = ["CAUTION", "VERSION", "ClosedOff", "Decoupling", "Element", "Fault", "Limit", "LinearSystem", "Modes", "Motions", "OperatingPoint", "Parameter", "Payload", "Readings", "Sensitivities", "SlowLine", "StateSpace", "Sweep", "Table", "Vehicle", "WheelRates", "example", "examples", "load", "loads", "schema"]
 
 CAUTION: Final[str]
 """
@@ -1070,6 +1070,109 @@ class Payload:
         """
 
 @final
+class Readings:
+    """
+    What a chassis engineer reads off a state.
+    """
+    def __copy__(self, /) -> Readings: ...
+    def __deepcopy__(self, /, _memo: Any) -> Readings: ...
+    def __eq__(self, other: object, /) -> bool: ...
+    def __reduce__(self, /) -> "tuple[object, tuple[bytes]]": ...
+    def __repr__(self, /) -> str: ...
+    def __str__(self, /) -> str: ...
+    def _repr_html_(self, /) -> str: ...
+    @staticmethod
+    def _restore(data: bytes) -> Readings: ...
+    @property
+    def braking_gradient(self, /) -> float:
+        """
+        Pitch per deceleration in braking, nose down positive [rad per m/s^2].
+        """
+    @property
+    def circuits(self, /) -> list[str]:
+        """
+        Names of the circuits.
+        """
+    @property
+    def cross_weight(self, /) -> float:
+        """
+        Cross weight of the tyre loads, (FR + RL) over all.
+        """
+    @property
+    def driving_gradient(self, /) -> float:
+        """
+        Pitch per acceleration in drive, nose up positive [rad per m/s^2].
+        """
+    @property
+    def fast(self, /) -> bool:
+        """
+        Whether the changes are fast.
+        """
+    @property
+    def front_transfer(self, /) -> float:
+        """
+        Front share of the lateral load transfer.
+        """
+    @property
+    def lateral_at_lift(self, /) -> float:
+        """
+        Lateral acceleration at which the first wheel lifts [m/s^2].
+        """
+    @property
+    def lift_in_corner(self, /) -> float:
+        """
+        Lift of the body at 5 m/s^2 of lateral acceleration [m].
+        """
+    @property
+    def load_per_height(self, /) -> NDArray[float64]:
+        """
+        Change of tyre loads (rows) per height under each wheel (columns), 4 x 4 [N/m].
+        """
+    @property
+    def load_per_twist(self, /) -> NDArray[float64]:
+        """
+        Change of each tyre load per ground twist [N/m].
+        """
+    @property
+    def pressure_per_braking(self, /) -> NDArray[float64]:
+        """
+        Change of each pressure per deceleration in braking [Pa per m/s^2].
+        """
+    @property
+    def pressure_per_lateral(self, /) -> NDArray[float64]:
+        """
+        Change of each pressure per lateral acceleration [Pa per m/s^2].
+        """
+    @property
+    def ride_frequency(self, /) -> NDArray[float64]:
+        """
+        Undamped frequency of the front and the rear sprung mass alone [Hz].
+        """
+    @property
+    def roll_gradient(self, /) -> float:
+        """
+        Roll per lateral acceleration [rad per m/s^2].
+        """
+    @property
+    def slope_at_lift(self, /) -> float:
+        """
+        Slope across at which the first wheel lifts [rad].
+        """
+    def table(self, /) -> Table:
+        """
+        The readings as a table.
+
+        Returns
+        -------
+        Table
+        """
+    @property
+    def twist_at_lift(self, /) -> float:
+        """
+        Ground twist h (times 1, -1, -1, 1) at which the first wheel lifts [m].
+        """
+
+@final
 class Sensitivities:
     """
     Derivatives of damped modes, four-motion tables and coupling with respect to every number of the vehicle.
@@ -1440,6 +1543,14 @@ class Vehicle:
     def __repr__(self, /) -> str: ...
     def __str__(self, /) -> str: ...
     def _repr_html_(self, /) -> str: ...
+    def case_table(self, /) -> Table:
+        """
+        The load cases of the file, as one table.
+
+        Returns
+        -------
+        Table
+        """
     @property
     def cases(self, /) -> list[str]:
         """
@@ -1475,6 +1586,27 @@ class Vehicle:
         """
         Description given in the file.
         """
+    def fault_table(self, /, **condition: "typing.Any") -> "Table":
+        """
+        The state each single fault leaves the vehicle in, the worst first.
+
+        Parameters
+        ----------
+        **condition : keywords of settle
+            What it stands under beside the fault.
+
+        Returns
+        -------
+        Table
+        """
+    def faults(self, /) -> list[Fault]:
+        """
+        Every single fault the layout can have.
+
+        Returns
+        -------
+        list of Fault
+        """
     @staticmethod
     def from_dict(data: "collections.abc.Mapping[str, object]") -> "Vehicle":
         """
@@ -1506,6 +1638,37 @@ class Vehicle:
         Returns
         -------
         list of Parameter
+        """
+    def readings(self, /, **condition: "typing.Any") -> "Readings":
+        """
+        What a chassis engineer reads off a state: gradients, load transfer, twist, wheel lift.
+
+        Parameters
+        ----------
+        **condition : keywords of settle
+            The state they are read about; ``fast=True`` for changes without heat exchange.
+
+        Returns
+        -------
+        Readings
+
+        Raises
+        ------
+        NotConverged
+            Where no equilibrium is found.
+        """
+    def readings_table(self, /, **condition: "typing.Any") -> "Table":
+        """
+        Readings of slow and fast changes, with oil and without, side by side.
+
+        Parameters
+        ----------
+        **condition : keywords of settle
+            The state they are read about.
+
+        Returns
+        -------
+        Table
         """
     def save(self, /, path: str | PathLike[str]) -> None:
         """
@@ -1609,7 +1772,7 @@ class Vehicle:
             ``oil.left`` and the like.
         values : array_like
             Its values, in SI, in the order to be followed.
-        **condition
+        **condition : keywords of settle
             Further keywords of `settle` that hold all along.
 
         Returns
@@ -1674,6 +1837,26 @@ class Vehicle:
         InvalidInput
             For an unknown path, with the nearest ones.
         """
+    def wheel_rates(self, /, travel: "numpy.typing.ArrayLike", fast: bool = False) -> "WheelRates":
+        """
+        Forces and rates of the suspension over its travel, in each motion and at one wheel of each axle.
+
+        Parameters
+        ----------
+        travel : array_like
+            Travel of each wheel of the pattern, bump positive [m].
+        fast : bool
+            Whether the gas exchanges no heat.
+
+        Returns
+        -------
+        WheelRates
+
+        Raises
+        ------
+        NotConverged
+            Where oil has nowhere to go.
+        """
     def with_setting(self, /, name: str) -> Vehicle:
         """
         The vehicle with a named setting of its file applied.
@@ -1711,6 +1894,62 @@ class Vehicle:
         ------
         InvalidInput
             With every violation at once; unknown paths name the nearest ones.
+        """
+    def without_oil(self, /) -> Vehicle:
+        """
+        The vehicle without oil and cylinders; springs carry all, at the same height.
+
+        Returns
+        -------
+        Vehicle
+        """
+
+@final
+class WheelRates:
+    """
+    Forces and rates of the suspension over its travel; rows are `patterns`.
+    """
+    def __copy__(self, /) -> WheelRates: ...
+    def __deepcopy__(self, /, _memo: Any) -> WheelRates: ...
+    def __eq__(self, other: object, /) -> bool: ...
+    def __reduce__(self, /) -> "tuple[object, tuple[bytes]]": ...
+    def __repr__(self, /) -> str: ...
+    def __str__(self, /) -> str: ...
+    def _repr_html_(self, /) -> str: ...
+    @staticmethod
+    def _restore(data: bytes) -> WheelRates: ...
+    @property
+    def fast(self, /) -> bool:
+        """
+        Whether the gas exchanges no heat.
+        """
+    @property
+    def force(self, /) -> NDArray[float64]:
+        """
+        Force per wheel along the pattern, 6 x travels [N].
+        """
+    @property
+    def patterns(self, /) -> list[str]:
+        """
+        Names of the rows: the four motions, then one wheel of each axle.
+        """
+    @property
+    def rate(self, /) -> NDArray[float64]:
+        """
+        Tangent rate per wheel along the pattern, 6 x travels [N/m].
+        """
+    def table(self, /) -> Table:
+        """
+        Rates over travel as a table.
+
+        Returns
+        -------
+        Table
+        """
+    @property
+    def travel(self, /) -> NDArray[float64]:
+        """
+        Travel of each wheel of the pattern, bump positive [m].
         """
 
 def example(name: str) -> Vehicle:

@@ -8,6 +8,7 @@ mod linear;
 mod modes;
 mod motions;
 mod point;
+mod readings;
 mod sensitivities;
 mod studies;
 mod table;
@@ -28,6 +29,8 @@ mod _core {
     use crate::motions::Motions;
     #[pymodule_export]
     use crate::point::{ClosedOff, Limit, OperatingPoint, SlowLine};
+    #[pymodule_export]
+    use crate::readings::{Readings, WheelRates};
     #[pymodule_export]
     use crate::sensitivities::Sensitivities;
     #[pymodule_export]

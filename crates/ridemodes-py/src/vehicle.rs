@@ -8,10 +8,11 @@ use pyo3::types::{PyDict, PyMapping};
 use ridemodes::Vehicle as Core;
 use serde_json::Value;
 
-use crate::condition::Given;
+use crate::condition::{Fault, Given};
 use crate::convert::{numbers, python, tree};
 use crate::errors::raise;
 use crate::point::OperatingPoint;
+use crate::readings::{Readings, WheelRates};
 use crate::studies::{Decoupling, Sweep, SweepCore};
 use crate::table::Table;
 
@@ -452,7 +453,7 @@ impl Vehicle {
     ///     ``oil.left`` and the like.
     /// values : array_like
     ///     Its values, in SI, in the order to be followed.
-    /// **condition
+    /// **condition : keywords of settle
     ///     Further keywords of `settle` that hold all along.
     ///
     /// Returns
@@ -475,6 +476,130 @@ impl Vehicle {
         let condition = Given::from_keywords(condition, "sweep")?.condition()?;
         let states = py.detach(|| self.0.states(path, &values, &condition)).map_err(raise)?;
         Ok(Sweep::new(SweepCore { car: self.0.clone(), condition, states }))
+    }
+
+    /// What a chassis engineer reads off a state: gradients, load transfer, twist, wheel lift.
+    ///
+    /// Parameters
+    /// ----------
+    /// **condition : keywords of settle
+    ///     The state they are read about; ``fast=True`` for changes without heat exchange.
+    ///
+    /// Returns
+    /// -------
+    /// Readings
+    ///
+    /// Raises
+    /// ------
+    /// NotConverged
+    ///     Where no equilibrium is found.
+    #[pyo3(signature = (**condition: "typing.Any") -> "Readings")]
+    fn readings(&self, py: Python<'_>, condition: Option<&Bound<'_, PyDict>>) -> PyResult<Readings> {
+        let condition = Given::from_keywords(condition, "readings")?.condition()?;
+        py.detach(|| self.0.readings(&condition)).map(Readings::new).map_err(raise)
+    }
+
+    /// Readings of slow and fast changes, with oil and without, side by side.
+    ///
+    /// Parameters
+    /// ----------
+    /// **condition : keywords of settle
+    ///     The state they are read about.
+    ///
+    /// Returns
+    /// -------
+    /// Table
+    #[pyo3(signature = (**condition: "typing.Any") -> "Table")]
+    fn readings_table(&self, py: Python<'_>, condition: Option<&Bound<'_, PyDict>>) -> PyResult<Table> {
+        let base = Given::from_keywords(condition, "readings_table")?.condition()?;
+        py.detach(|| {
+            let slow = self.0.readings(&ridemodes::Condition { fast: false, ..base.clone() })?;
+            let fast = self.0.readings(&ridemodes::Condition { fast: true, ..base.clone() })?;
+            let bare = self.0.without_oil().and_then(|car| {
+                let bare = ridemodes::Condition {
+                    fast: false,
+                    oil: Default::default(),
+                    pressure: Default::default(),
+                    levelled: false,
+                    faults: Vec::new(),
+                    ..base.clone()
+                };
+                car.readings(&bare)
+            });
+            let mut columns = vec![("slow", &slow), ("fast", &fast)];
+            if let Ok(bare) = &bare {
+                columns.push(("without oil", bare));
+            }
+            Ok(ridemodes::Readings::table(&columns))
+        })
+        .map(Table::from)
+        .map_err(raise)
+    }
+
+    /// Forces and rates of the suspension over its travel, in each motion and at one wheel of each axle.
+    ///
+    /// Parameters
+    /// ----------
+    /// travel : array_like
+    ///     Travel of each wheel of the pattern, bump positive [m].
+    /// fast : bool
+    ///     Whether the gas exchanges no heat.
+    ///
+    /// Returns
+    /// -------
+    /// WheelRates
+    ///
+    /// Raises
+    /// ------
+    /// NotConverged
+    ///     Where oil has nowhere to go.
+    #[pyo3(signature = (travel: "numpy.typing.ArrayLike", fast=false) -> "WheelRates")]
+    fn wheel_rates(&self, py: Python<'_>, travel: &Bound<'_, PyAny>, fast: bool) -> PyResult<WheelRates> {
+        let travel = numbers(travel)?;
+        py.detach(|| self.0.wheel_rates(&travel, fast)).map(WheelRates::new).map_err(raise)
+    }
+
+    /// The vehicle without oil and cylinders; springs carry all, at the same height.
+    ///
+    /// Returns
+    /// -------
+    /// Vehicle
+    fn without_oil(&self, py: Python<'_>) -> PyResult<Self> {
+        py.detach(|| self.0.without_oil()).map(Self).map_err(raise)
+    }
+
+    /// Every single fault the layout can have.
+    ///
+    /// Returns
+    /// -------
+    /// list of Fault
+    fn faults(&self) -> Vec<Fault> {
+        self.0.faults().into_iter().map(Fault::new).collect()
+    }
+
+    /// The state each single fault leaves the vehicle in, the worst first.
+    ///
+    /// Parameters
+    /// ----------
+    /// **condition : keywords of settle
+    ///     What it stands under beside the fault.
+    ///
+    /// Returns
+    /// -------
+    /// Table
+    #[pyo3(signature = (**condition: "typing.Any") -> "Table")]
+    fn fault_table(&self, py: Python<'_>, condition: Option<&Bound<'_, PyDict>>) -> PyResult<Table> {
+        let base = Given::from_keywords(condition, "fault_table")?.condition()?;
+        Ok(py.detach(|| self.0.fault_table(&base)).into())
+    }
+
+    /// The load cases of the file, as one table.
+    ///
+    /// Returns
+    /// -------
+    /// Table
+    fn case_table(&self, py: Python<'_>) -> Table {
+        py.detach(|| self.0.case_table()).into()
     }
 
     /// For every number the value that would decouple two motions in stiffness, solved one number at a time.

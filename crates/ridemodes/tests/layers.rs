@@ -14,7 +14,7 @@ const LAYERS: [&[&str]; 12] = [
     &["states"],
     &["system"],
     &["corner_motions", "modes"],
-    &["decoupling", "sensitivities", "sweep"],
+    &["decoupling", "readings", "sensitivities", "sweep"],
     &["report"],
     &["examples"],
 ];

@@ -2,8 +2,10 @@
 
 use super::{Table, fixed, percent};
 use crate::decoupling::Decoupling;
+use crate::readings::{PATTERN_NAMES, Readings, WheelRates};
 use crate::states::States;
 use crate::sweep::Sweep;
+use crate::units::STANDARD_GRAVITY;
 
 impl Decoupling {
     /// What each number could do, the smallest change first.
@@ -30,6 +32,56 @@ impl Decoupling {
             ]);
         }
         table.note("one number at a time, within its bounds and a thousandth to a thousand times its value; the design height is held")
+    }
+}
+
+impl Readings {
+    /// Several readings side by side, e.g. slow, fast and without oil, with the name of each.
+    pub fn table(columns: &[(&str, &Self)]) -> Table {
+        let mut headings = vec!["reading"];
+        headings.extend(columns.iter().map(|(name, _)| *name));
+        let mut table = Table::new("Handling readings", &headings);
+        let g = STANDARD_GRAVITY;
+        let mut line = |name: &str, of: &dyn Fn(&Self) -> String| {
+            let cells = columns.iter().map(|(_, readings)| of(readings));
+            table.row([name.to_owned()].into_iter().chain(cells));
+        };
+        line("roll gradient deg/g", &|r| fixed(r.roll_gradient.to_degrees() * g, 3));
+        line("pitch in braking deg/g", &|r| fixed(r.braking_gradient.to_degrees() * g, 3));
+        line("pitch in drive deg/g", &|r| fixed(r.driving_gradient.to_degrees() * g, 3));
+        line("load transfer front %", &|r| percent(r.front_transfer));
+        line("tyre load per mm of twist N", &|r| fixed(1e-3 * r.load_per_twist[0], 2));
+        line("tyre load per mm of one raised front wheel N", &|r| fixed(1e-3 * r.load_per_height[(0, 0)], 2));
+        line("tyre load per mm of one raised rear wheel N", &|r| fixed(1e-3 * r.load_per_height[(2, 2)], 2));
+        line("twist at first wheel lift mm", &|r| fixed(1e3 * r.twist_at_lift, 1));
+        line("lateral at first wheel lift m/s²", &|r| fixed(r.lateral_at_lift, 2));
+        line("side slope at first wheel lift deg", &|r| fixed(r.slope_at_lift.to_degrees(), 1));
+        line("cross weight %", &|r| percent(r.cross_weight));
+        line("lift at 5 m/s² mm", &|r| fixed(1e3 * r.lift_in_corner, 2));
+        line("ride frequency front Hz", &|r| fixed(r.ride_frequency[0], 3));
+        line("ride frequency rear Hz", &|r| fixed(r.ride_frequency[1], 3));
+        let circuits: Vec<String> = columns.first().map_or_else(Vec::new, |(_, readings)| readings.circuits.clone());
+        for (i, circuit) in circuits.iter().enumerate() {
+            let cell = |values: &[f64]| values.get(i).map_or_else(|| "–".into(), |p| fixed(1e-5 * p * g, 2));
+            line(&format!("{circuit} bar per g lateral"), &|r| cell(&r.pressure_per_lateral));
+            line(&format!("{circuit} bar per g braking"), &|r| cell(&r.pressure_per_braking));
+        }
+        table.note("tyres and the leaned body's weight included; the linear ride frequency has the gas by its exponent")
+    }
+}
+
+impl WheelRates {
+    /// Tangent rates over travel.
+    pub fn table(&self) -> Table {
+        let mut columns = vec!["travel mm".to_owned()];
+        columns.extend(PATTERN_NAMES.iter().map(|name| format!("{name} N/mm")));
+        let columns: Vec<&str> = columns.iter().map(String::as_str).collect();
+        let mut table = Table::new("Wheel rates over travel", &columns);
+        for (column, travel) in self.travel.iter().enumerate() {
+            let cells = (0..PATTERN_NAMES.len()).map(|row| fixed(1e-3 * self.rate[(row, column)], 2));
+            table.row([fixed(1e3 * travel, 1)].into_iter().chain(cells));
+        }
+        table.note(if self.fast { "gas without heat exchange" } else { "gas at the temperature of its wall" })
     }
 }
 

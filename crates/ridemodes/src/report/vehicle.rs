@@ -2,7 +2,8 @@
 
 use super::{Table, Tables, degrees, fixed, percent};
 use crate::axes::{CORNER_NAMES, CORNERS};
-use crate::statics::OperatingPoint;
+use crate::error::Result;
+use crate::statics::{Condition, Limit, OperatingPoint};
 use crate::vehicle::Vehicle;
 
 impl Vehicle {
@@ -36,6 +37,68 @@ fn significant(value: f64) -> String {
     }
 }
 
+impl Vehicle {
+    /// Attitude, tyre loads, pressures and passed limits of each load case of the file.
+    pub fn case_table(&self) -> Table {
+        let cases: Vec<(String, Result<OperatingPoint>)> =
+            self.cases().into_iter().map(|name| (name.to_owned(), self.settle_case(name))).collect();
+        state_table("Load cases", "case", cases)
+    }
+
+    /// The state each single fault leaves the vehicle in, the worst first.
+    pub fn fault_table(&self, base: &Condition) -> Table {
+        let states = self.fault_states(base).into_iter().map(|(fault, state)| (fault.name(), state)).collect();
+        state_table("Faults, the worst first", "fault", states).note(
+            "changed, damaged or pressurised parts can injure: judge by test, under local rules, by qualified people",
+        )
+    }
+}
+
+fn state_table(title: &str, what: &str, states: Vec<(String, Result<OperatingPoint>)>) -> Table {
+    let columns = [
+        what,
+        "heave mm",
+        "pitch deg",
+        "roll deg",
+        "most bump mm",
+        "most rebound mm",
+        "least tyre N",
+        "bar abs",
+        "passed",
+    ];
+    let mut table = Table::new(title, &columns);
+    for (name, state) in states {
+        let point = match state {
+            Ok(point) => point,
+            Err(error) => {
+                let mut cells = vec![name];
+                cells.extend((0..7).map(|_| "–".to_owned()));
+                cells.push(error.name().to_owned());
+                table.row(cells);
+                continue;
+            }
+        };
+        let extreme =
+            |values: &[f64; 4], pick: fn(f64, f64) -> f64| values.iter().copied().reduce(pick).unwrap_or(f64::NAN);
+        let (delta, load) = (point.deflection.as_array(), point.tyre_load.as_array());
+        let pressures: Vec<String> = point.pressure.iter().map(|p| fixed(p / 1e5, 1)).collect();
+        let passed: Vec<&str> =
+            point.limits.iter().filter(|limit| limit.is_passed()).map(|limit| limit.name.as_str()).collect();
+        table.row([
+            name,
+            fixed(1e3 * point.attitude[0], 1),
+            fixed(degrees(point.attitude[1]), 2),
+            fixed(degrees(point.attitude[2]), 2),
+            fixed(1e3 * extreme(delta, f64::max), 1),
+            fixed(1e3 * extreme(delta, f64::min), 1),
+            fixed(extreme(load, f64::min), 0),
+            if pressures.is_empty() { "–".into() } else { pressures.join(" ") },
+            if passed.is_empty() { "–".into() } else { passed.join(", ") },
+        ]);
+    }
+    table
+}
+
 impl OperatingPoint {
     /// Corner loads and circuits, for people.
     pub fn tables(&self) -> Tables {
@@ -43,22 +106,23 @@ impl OperatingPoint {
         if !self.circuits.is_empty() {
             tables.push(self.circuit_table());
         }
-        tables.extend([self.slow_line_table(), self.closed_off_table()].into_iter().flatten());
+        tables.extend([self.slow_line_table(), self.closed_off_table(), self.limit_table()].into_iter().flatten());
         Tables(tables)
     }
 
     /// What carries each corner.
     pub fn corner_table(&self) -> Table {
         let mut table = Table::new(
-            "Static loads at the design condition",
+            format!("Static loads {}", self.condition.words()),
             &[
                 "corner",
                 "tyre N",
                 "sprung N",
                 "oil N",
                 "spring N (at wheel)",
+                "stop N",
                 "oil %",
-                "preload N (in spring)",
+                "force N (in spring)",
                 "deflection mm",
             ],
         );
@@ -69,6 +133,7 @@ impl OperatingPoint {
                 fixed(self.corner_load[corner], 0),
                 fixed(self.oil_load[corner], 0),
                 fixed(self.spring_load[corner], 0),
+                fixed(0.0 + self.stop_load[corner], 0),
                 percent(self.oil_load[corner] / self.corner_load[corner]),
                 fixed(self.spring_preload[corner], 0),
                 fixed(1e3 * self.deflection[corner], 1),
@@ -109,6 +174,21 @@ impl OperatingPoint {
         let table =
             table.note("open for a standing vehicle, shut for coupling, motions and undamped modes; wheels held");
         (!self.slow_lines.is_empty()).then_some(table)
+    }
+
+    /// Limits that are passed; none, no table.
+    pub fn limit_table(&self) -> Option<Table> {
+        let mut table = Table::new("Limits passed", &["limit", "value", "bound", "unit"]);
+        let passed: Vec<&Limit> = self.limits.iter().filter(|limit| limit.is_passed()).collect();
+        for limit in &passed {
+            table.row([
+                limit.name.clone(),
+                format!("{:.4e}", limit.value),
+                format!("{:.4e}", limit.limit),
+                limit.unit.clone(),
+            ]);
+        }
+        (!passed.is_empty()).then_some(table)
     }
 
     /// What closed lines have cut off; none, no table.

@@ -301,6 +301,51 @@ impl Condition {
         })
     }
 
+    /// The condition in words, for headings.
+    pub(crate) fn words(&self) -> String {
+        if self.is_design() {
+            return "at the design condition".into();
+        }
+        let mut words = Vec::new();
+        for (name, value, unit) in [
+            ("lateral", self.lateral, "m/s²"),
+            ("longitudinal", self.longitudinal, "m/s²"),
+            ("vertical", self.vertical, "m/s²"),
+            ("side slope", self.side_slope.to_degrees(), "deg"),
+            ("grade", self.grade.to_degrees(), "deg"),
+        ] {
+            if value != 0.0 {
+                words.push(format!("{name} {value:.3} {unit}"));
+            }
+        }
+        if let Some(temperature) = self.temperature {
+            words.push(format!("{:.1} °C", temperature - 273.15));
+        }
+        let mass: f64 = self.payload.iter().map(|payload| payload.mass).sum();
+        if mass != 0.0 {
+            words.push(format!("{mass:.0} kg payload"));
+        }
+        if self.heights != [0.0; 4] {
+            words.push(format!("ground {} mm", self.heights.map(|h| format!("{:.1}", 1e3 * h)).join(" ")));
+        }
+        if self.downforce != [0.0; 2] {
+            words.push(format!("downforce {} N", self.downforce.map(|load| format!("{load:.0}")).join(" ")));
+        }
+        if self.spring_seat != [0.0; 4] {
+            words.push("spring seats moved".into());
+        }
+        words.extend(self.oil.iter().map(|(name, volume)| format!("{:.1} cm³ added to {name}", 1e6 * volume)));
+        words.extend(self.pressure.iter().map(|(name, pressure)| format!("{name} at {:.2} bar abs", pressure / 1e5)));
+        if self.levelled {
+            words.push("levelled".into());
+        }
+        words.extend(self.faults.iter().map(Fault::name));
+        if self.fast {
+            words.push("fast".into());
+        }
+        format!("under {}", words.join(", "))
+    }
+
     /// Whether nothing departs from the design condition.
     pub(crate) fn is_design(&self) -> bool {
         *self == Self::default() || *self == Self { fast: true, ..Self::default() }

@@ -11,7 +11,7 @@ use serde::{Deserialize, Serialize};
 use crate::axes::{CORNERS, PerCorner};
 use crate::error::Result;
 use crate::hydraulics::{Network, NetworkValues, OilState, Store, Way};
-use crate::numerics::Scalar;
+use crate::numerics::{Dual, Scalar};
 use crate::spec::{Slot, Spec};
 use crate::units::STANDARD_GRAVITY;
 use crate::vehicle::Vehicle;
@@ -387,6 +387,31 @@ fn lines_apart(
 }
 
 impl OperatingPoint {
+    /// Suspension force and tangent along a pattern of deflections s·pattern from the design height on, patternᵀF − its
+    /// value at rest [N], [N/m]; `None` where oil has nowhere to go.
+    pub(crate) fn forces_along(&self, pattern: &[f64; 4], s: f64, condition: &Condition) -> Option<(f64, f64)> {
+        let numbers: Vec<Dual> = self.car.numbers().iter().map(|&number| Dual::constant(number)).collect();
+        let standing = condition.fast.then_some(&self.solution);
+        let at = At::new(&self.car, &numbers, condition, &self.charge, &self.solution, standing);
+        let force = |s: Dual| -> Option<Dual> {
+            let deflection: [Dual; 4] = pattern.map(|part| s * part);
+            let pressure: Option<Vec<Dual>> = at
+                .parts
+                .regions
+                .iter()
+                .map(|region| region.pressure(region.pushed(&deflection), region.design_pressure.value))
+                .collect();
+            let forces = suspension_forces(&at.parts, &deflection, &pressure?);
+            let mut along = Dual::zero();
+            for (force, part) in forces.iter().zip(pattern) {
+                along += *force * *part;
+            }
+            Some(along)
+        };
+        let (here, rest) = (force(Dual::variable(s))?, force(Dual::constant(0.0))?);
+        Some((here.value - rest.value, here.derivative))
+    }
+
     /// Share of the lateral load transfer that the front axle takes; NaN without any.
     pub fn front_transfer(&self) -> f64 {
         let load = self.tyre_load.as_array();
