@@ -22,6 +22,8 @@ pub(crate) struct Gas<T> {
     pub kind: GasKind,
     /// Volume when empty of oil [m³].
     pub full: T,
+    /// Volume at which the separator meets its end stop [m³].
+    pub least: T,
     /// Polytropic exponent of fast changes, of an ideal gas.
     pub exponent: T,
     /// Amount: p V/T of an ideal gas [Pa·m³/K], the mass of nitrogen [kg].
@@ -33,8 +35,8 @@ pub(crate) struct Gas<T> {
 pub(crate) struct GasState<T> {
     /// Volume [m³].
     pub volume: T,
-    /// Whether the accumulator is empty of oil, and rigid.
-    pub empty: bool,
+    /// Whether the accumulator is empty of oil or at its end stop, and rigid.
+    pub rigid: bool,
 }
 
 impl<T: Scalar> Gas<T> {
@@ -62,35 +64,44 @@ impl<T: Scalar> Gas<T> {
                 if share.value() < 1.0 { volume } else { volume * share }
             }
         };
-        Self { kind, full, exponent, amount: charge * full }
-    }
-
-    /// The gas in plain numbers.
-    pub(crate) fn plain(&self) -> Gas<f64> {
-        Gas { kind: self.kind, full: self.full.value(), exponent: self.exponent.value(), amount: self.amount.value() }
+        Self { kind, full, least: T::zero(), exponent, amount: charge * full }
     }
 
     /// Pressure at which it fills the accumulator, p₀ T/T₀ of an ideal gas [Pa].
     pub(crate) fn empty_pressure(&self, temperature: T) -> T {
+        self.pressure_of(self.full, temperature)
+    }
+
+    // p = n T/V, p(m/V, T)
+    fn pressure_of(&self, volume: T, temperature: T) -> T {
         match self.kind {
-            GasKind::Ideal => self.amount * temperature / self.full,
-            GasKind::Nitrogen => Nitrogen::pressure(self.amount / self.full, temperature),
+            GasKind::Ideal => self.amount * temperature / volume,
+            GasKind::Nitrogen => Nitrogen::pressure(self.amount / volume, temperature),
         }
     }
 
     /// The gas at a pressure and temperature.
     pub(crate) fn at(&self, pressure: T, temperature: T) -> GasState<T> {
         if self.amount.value() <= 0.0 {
-            // No charge: oil fills it.
-            return GasState { volume: T::zero(), empty: true };
+            // No charge: oil fills it up to its end stop.
+            return GasState { volume: self.least, rigid: true };
         }
         // V_g = V₀ (p₀/p)(T/T₀), V₀ ρ(p₀, T₀)/ρ(p, T)
         let volume = match self.kind {
             GasKind::Ideal => self.amount * temperature / pressure,
             GasKind::Nitrogen => self.amount / Nitrogen::density(pressure, temperature),
         };
-        let empty = volume.value() > self.full.value();
-        GasState { volume: if empty { self.full } else { volume }, empty }
+        self.between_its_ends(volume)
+    }
+
+    fn between_its_ends(&self, volume: T) -> GasState<T> {
+        if volume.value() > self.full.value() {
+            GasState { volume: self.full, rigid: true }
+        } else if volume.value() < self.least.value() {
+            GasState { volume: self.least, rigid: true }
+        } else {
+            GasState { volume, rigid: false }
+        }
     }
 
     /// The gas at a pressure it came to without heat exchange from a state at rest.
@@ -98,32 +109,35 @@ impl<T: Scalar> Gas<T> {
         if self.amount.value() <= 0.0 {
             return start;
         }
-        // An accumulator that was empty begins to move at the pressure of its charge.
-        let from = if start.empty { self.empty_pressure(temperature) } else { from };
+        // A gas that was at an end begins to move at the pressure that its own amount has there.
+        let from = if start.rigid { self.pressure_of(start.volume, temperature) } else { from };
         let volume = match self.kind {
             // V (p/p_start)^(−1/κ)
             GasKind::Ideal => start.volume * ((from / pressure).ln() / self.exponent).exp(),
             GasKind::Nitrogen => self.amount / Nitrogen::isentrope(self.amount / start.volume, temperature, pressure),
         };
-        let empty = volume.value() > self.full.value();
-        GasState { volume: if empty { self.full } else { volume }, empty }
+        self.between_its_ends(volume)
     }
 
     /// Exponents n of C = V/(n p), slow (isothermal) and fast.
-    pub(crate) fn exponents(&self, state: GasState<T>, temperature: T) -> [T; 2] {
+    pub(crate) fn exponents(&self, state: GasState<T>, [pressure, temperature]: [T; 2]) -> [T; 2] {
         match self.kind {
             GasKind::Ideal => [T::one(), self.exponent],
-            GasKind::Nitrogen => Nitrogen::exponents(self.amount / state.volume, temperature),
+            GasKind::Nitrogen => {
+                // Squeezed without heat exchange it is warmer than its wall.
+                let density = self.amount / state.volume;
+                Nitrogen::exponents(density, Nitrogen::temperature(density, pressure, temperature))
+            }
         }
     }
 
-    /// Compliances dV/dp of the gas, slow and fast [m³/Pa]; none when the accumulator is empty of oil.
+    /// Compliances dV/dp of the gas, slow and fast [m³/Pa]; none when the accumulator is empty of oil or at its end stop.
     pub(crate) fn compliances(&self, state: GasState<T>, [pressure, temperature]: [T; 2]) -> [T; 2] {
-        if state.empty {
+        if state.rigid {
             return [T::zero(); 2];
         }
         // C = V_g/(κ p)
-        self.exponents(state, temperature).map(|exponent| state.volume / (exponent * pressure))
+        self.exponents(state, [pressure, temperature]).map(|exponent| state.volume / (exponent * pressure))
     }
 }
 
@@ -165,7 +179,7 @@ mod tests {
         let law = |kind| Gas::charged(kind, Fill::Precharge(1e-3), 1e4, 280.0, 1.3995, [p, t]);
         let (real, ideal) = (law(GasKind::Nitrogen), law(GasKind::Ideal));
         assert_relative_eq!(real.at(p, t).volume, ideal.at(p, t).volume, max_relative = 1e-4);
-        let [slow, fast] = real.exponents(real.at(p, t), t);
+        let [slow, fast] = real.exponents(real.at(p, t), [p, t]);
         assert_relative_eq!(slow, 1.0, max_relative = 1e-3);
         assert_relative_eq!(fast, 1.4, max_relative = 1e-3);
     }
@@ -174,8 +188,12 @@ mod tests {
     fn an_empty_accumulator_is_rigid() {
         let gas = ideal(Fill::Precharge(1e-3), 4e6, 1.4, 3e6);
         let state = gas.at(3e6, 293.15);
-        assert_eq!((state.volume, state.empty), (1e-3, true));
+        assert_eq!((state.volume, state.rigid), (1e-3, true));
         assert_eq!(gas.compliances(state, [3e6, 293.15]), [0.0; 2]);
         assert_relative_eq!(gas.empty_pressure(293.15), 4e6, max_relative = 1e-14);
+        // So it is at its end stop.
+        let stopped = Gas { least: 0.4e-3, ..gas };
+        assert_eq!((stopped.at(12e6, 293.15).volume, stopped.at(12e6, 293.15).rigid), (0.4e-3, true));
+        assert!(!stopped.at(9e6, 293.15).rigid);
     }
 }

@@ -111,6 +111,83 @@ fn linear_at_the_state_is_the_slope_of_the_state() {
     }
 }
 
+// ∂state/∂parameter by the implicit function theorem, seen through the sensitivities at a loaded state: against states
+// solved anew with the number changed.
+#[test]
+fn derivatives_pass_through_the_operating_point() {
+    let mut roadster = Vehicle::example("roadster").unwrap().to_value();
+    set(&mut roadster, "front.both.spring.motion_ratio_slope", 0.9);
+    set(&mut roadster, "rear.both.spring.cubic", 4e6);
+    set(&mut roadster, "front.both.bump_stop", json!({ "gap": 0.005, "rate": 2e4, "cubic": 1e7 }));
+    set(&mut roadster, "rear.both.cylinder.motion_ratio_slope", -0.5);
+    set(&mut roadster, "layout.accumulators.main.gas", "nitrogen");
+    let car = vehicle(&roadster);
+    for fast in [false, true] {
+        let condition = Condition { fast, ..mixed() };
+        let at = |path: &str, value: f64| {
+            let car = car.with_values([(path, value)]).unwrap();
+            settle(&car, &condition).linear().unwrap()
+        };
+        let lin = settle(&car, &condition).linear().unwrap();
+        let found = lin.sensitivities().unwrap();
+        let mut checked = 0;
+        for (place, path) in found.paths.iter().enumerate().filter(|(place, _)| found.values[*place] != 0.0) {
+            let value = found.values[place];
+            let step = 2e-5 * value.abs();
+            let (above, below) = (at(path, value + step), at(path, value - step));
+            let (a, b) = (above.motions().unwrap().stiffness.total, below.motions().unwrap().stiffness.total);
+            for i in 0..4 {
+                for j in 0..4 {
+                    let numeric = (a[(i, j)] - b[(i, j)]) / (2.0 * step);
+                    let exact = found.stiffness[(i, j, place)];
+                    let blur = 2e-6 * a.amax() / value.abs();
+                    assert!(
+                        (exact - numeric).abs() <= 1e-5 * numeric.abs() + blur,
+                        "{path} {i} {j}: {exact} {numeric}"
+                    );
+                    checked += usize::from(numeric.abs() > 100.0 * blur);
+                }
+            }
+        }
+        assert!(checked > 50, "{checked}");
+    }
+}
+
+// A relaxing gas is isothermal for a slow state, and so is the slope of the state.
+#[test]
+fn slow_states_have_the_slope_of_relaxed_gas() {
+    let mut car = square_oil_car("roll");
+    set(&mut car, "layout.accumulators.main.relaxation_time", 4.0);
+    let car = vehicle(&car);
+    let base = lateral(4.0);
+    let lin = settle(&car, &base).linear_with_gravity().unwrap();
+    let unit: Vec<f64> = (0..lin.coordinates().len()).map(|i| 1.0 / lin.stiffness()[(i, i)].sqrt()).collect();
+    let n = unit.len();
+    let scaled = DMatrix::from_fn(n, n, |i, j| lin.stiffness()[(i, j)] * unit[i] * unit[j]);
+    let solved = scaled.lu().solve(&DMatrix::from_fn(n, 4, |i, j| lin.road_stiffness()[(i, j)] * unit[i])).unwrap();
+    let roll = |height: f64| settle(&car, &Condition { heights: [height, 0.0, 0.0, 0.0], ..base.clone() }).attitude[2];
+    let slope = (roll(1e-4) - roll(-1e-4)) / 2e-4;
+    assert_relative_eq!(slope, solved[(2, 0)] * unit[2], max_relative = 1e-6);
+}
+
+// At its end stop a separator carries on rigidly; with a second accumulator the pressure goes on.
+#[test]
+fn a_soft_accumulator_bottoms_into_a_hard_one() {
+    let mut car = square_oil_car("heave");
+    set(
+        &mut car,
+        "layout.accumulators.main",
+        json!({ "volume": 0.3e-3, "precharge": 18e5, "least_gas_volume": 0.14e-3 }),
+    );
+    set(&mut car, "layout.accumulators.hard", json!({ "volume": 0.2e-3, "precharge": 45e5 }));
+    let point = settle(&vehicle(&car), &Condition { vertical: 60.0, ..Condition::default() });
+    let by = |name: &str| point.accumulators.iter().find(|state| state.name.ends_with(name)).unwrap();
+    assert_eq!(by("bump.accumulators.main").gas_volume, 0.14e-3, "{:?}", point.pressure);
+    assert!(by("bump.accumulators.hard").gas_volume < 0.2e-3);
+    let name = "circuits.bump.accumulators.main.end_stop";
+    assert!(point.limits.iter().any(|limit| limit.name == name && limit.is_passed()));
+}
+
 // For small loads the state moves by K⁻¹ f.
 #[test]
 fn small_loads_move_it_linearly() {

@@ -137,6 +137,26 @@ impl Nitrogen {
         start - (Self::pressure(start, temperature) - pressure) / T::constant(Self::slope(density, t))
     }
 
+    /// Temperature at a density and pressure, from one nearby [K].
+    pub(crate) fn temperature<T: Scalar>(density: T, pressure: T, near: T) -> T {
+        let (rho, p) = (density.value(), pressure.value());
+        // (∂p/∂T)_ρ = ρ R (1 + δ α_δ − δτ α_δτ)
+        let slope = |t: f64| {
+            let r = residual(rho, t);
+            rho * GAS_CONSTANT * (r.d - r.dt + 1.0)
+        };
+        let mut t = near.value();
+        for _ in 0..30 {
+            let step = (Self::pressure(rho, t) - p) / slope(t);
+            t -= step.clamp(-0.3 * t, 0.3 * t);
+            if step.abs() <= 4e-16 * t {
+                break;
+            }
+        }
+        let end = T::constant(t);
+        end - (Self::pressure(density, end) - pressure) / T::constant(slope(t))
+    }
+
     /// Exponents (ρ/p)(∂p/∂ρ) at constant temperature and at constant entropy.
     pub(crate) fn exponents<T: Scalar>(density: T, temperature: T) -> [T; 2] {
         let r = residual(density, temperature);

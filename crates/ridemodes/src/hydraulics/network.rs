@@ -300,6 +300,7 @@ impl AccumulatorRef {
         };
         let at_rest = [value(self.pressure), temperature];
         let (precharge, charged_at) = (value(self.precharge), value(self.precharge_temperature));
-        Gas::charged(self.kind, fill, precharge, charged_at, value(self.exponent), at_rest)
+        let gas = Gas::charged(self.kind, fill, precharge, charged_at, value(self.exponent), at_rest);
+        Gas { least: value(self.least_gas_volume), ..gas }
     }
 }

@@ -72,7 +72,12 @@ pub(super) fn limits(point: &OperatingPoint) -> Vec<Limit> {
         for state in point.accumulators.iter().filter(|state| state.name.starts_with(&format!("{base}."))) {
             all.push(limit(format!("{}.empty", state.name), state.pressure, state.empty_pressure, "Pa", false));
             if state.least_volume > 0.0 {
-                all.push(limit(format!("{}.end_stop", state.name), state.gas_volume, state.least_volume, "m^3", false));
+                let mut stop =
+                    limit(format!("{}.end_stop", state.name), state.gas_volume, state.least_volume, "m^3", false);
+                if stop.margin <= 0.0 {
+                    stop.margin = -f64::MIN_POSITIVE;
+                }
+                all.push(stop);
             }
         }
         let least = own.minimum_pressure.map_or(point.atmosphere + 1e5, value);
@@ -139,8 +144,8 @@ pub(super) fn warnings(point: &OperatingPoint) -> Vec<String> {
                 state.empty_pressure / 1e5
             ));
         }
-        if state.gas_volume < state.least_volume {
-            warnings.push(format!("{}: the separator is beyond its end stop", state.name));
+        if state.least_volume > 0.0 && state.gas_volume <= state.least_volume {
+            warnings.push(format!("{}: the separator is at its end stop", state.name));
         }
     }
     for (name, cavity) in point.circuits.iter().zip(&point.cavity) {

@@ -279,7 +279,7 @@ impl OperatingPoint {
             for &circuit in &region.hubs {
                 pressure[circuit] = p;
                 let found = region.held.is_some();
-                oil_added[circuit] = if found { region.oil_to_add(p, pushed) } else { 0.0 } + region.added;
+                oil_added[circuit] = if found { region.missing(p, pushed) } else { 0.0 } + region.added;
                 cavity[circuit] = region.cavity(p, pushed);
             }
         }

@@ -200,9 +200,9 @@ impl<T: Scalar> Region<T> {
         if let Some(held) = self.held {
             return Some(held);
         }
-        let plain = self.plain();
-        let volume = pushed.value();
-        let excess = |p: f64| plain.excess(p, volume);
+        let volume = T::constant(pushed.value());
+        let excess = |p: f64| self.excess(T::constant(p), volume).value();
+        let compliance_at = |p: f64| self.compliance(T::constant(p)).value();
         if excess(VACUUM) <= 0.0 {
             return Some(T::constant(VACUUM));
         }
@@ -216,7 +216,7 @@ impl<T: Scalar> Region<T> {
             } else {
                 high = high.min(p);
             }
-            let compliance = plain.compliance(p);
+            let compliance = compliance_at(p);
             let step = missing / (compliance * p);
             let mut next = p * step.clamp(-2.0, 2.0).exp();
             let inside = next > low && next < high;
@@ -232,7 +232,7 @@ impl<T: Scalar> Region<T> {
                 break;
             }
         }
-        let compliance = plain.compliance(p);
+        let compliance = compliance_at(p);
         if compliance <= 0.0 {
             return None;
         }
@@ -242,39 +242,17 @@ impl<T: Scalar> Region<T> {
     }
 
     /// Volume of the cavity where the oil has torn off [m³].
-    pub(crate) fn cavity(&self, pressure: f64, pushed: f64) -> f64 {
-        if self.held.is_some() || pressure > VACUUM { 0.0 } else { (-self.plain().excess(pressure, pushed)).max(0.0) }
+    pub(crate) fn cavity(&self, pressure: T, pushed: T) -> f64 {
+        if self.held.is_some() || pressure.value() > VACUUM {
+            0.0
+        } else {
+            (-self.excess(pressure, pushed).value()).max(0.0)
+        }
     }
 
     /// What the balance of volumes misses at a pressure, in the scalar [m³].
     pub(crate) fn missing(&self, pressure: T, pushed: T) -> T {
         -self.excess(pressure, pushed)
-    }
-
-    /// Oil that must be added so that the region is at a pressure with a volume pushed in [m³].
-    pub(crate) fn oil_to_add(&self, pressure: f64, pushed: f64) -> f64 {
-        -self.plain().excess(pressure, pushed)
-    }
-
-    /// The region in plain numbers.
-    pub(crate) fn plain(&self) -> Region<f64> {
-        let state = |state: &GasState<T>| GasState { volume: state.volume.value(), empty: state.empty };
-        Region {
-            nodes: Vec::new(),
-            hubs: Vec::new(),
-            chambers: Vec::new(),
-            gases: self.gases.iter().map(|(index, gas, design)| (*index, gas.plain(), design.value())).collect(),
-            design_pressure: self.design_pressure.value(),
-            oil: self.oil.value(),
-            added: self.added.value(),
-            growth: self.growth.value(),
-            inverse_bulk: self.inverse_bulk.value(),
-            air: self.air.value(),
-            hoses: self.hoses.value(),
-            held: self.held.map(Scalar::value),
-            start: self.start.as_ref().map(|(gas, from)| (gas.iter().map(state).collect(), from.value())),
-            temperature: self.temperature.value(),
-        }
     }
 }
 
