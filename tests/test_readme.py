@@ -11,7 +11,7 @@ README = (Path(__file__).parent.parent / "README.md").read_text(encoding="utf-8"
 
 
 def test_python_block_prints_its_comments():
-    code, more = re.findall(r"```python\n(.*?)```", README, re.DOTALL)
+    code, more, state = re.findall(r"```python\n(.*?)```", README, re.DOTALL)
     expected = re.findall(r"print\(.*\)\s+# (.*)", code)
     printed = io.StringIO()
     names = {}
@@ -19,7 +19,9 @@ def test_python_block_prints_its_comments():
         exec(code, names)
     with contextlib.redirect_stdout(io.StringIO()) as tables:
         exec(more, names)
+        exec(state, names)
     assert "What moves body roll" in tables.getvalue()
+    assert "Handling readings" in tables.getvalue()
     assert printed.getvalue().splitlines() == [line.strip() for line in expected]
     assert len(expected) == 3
 

@@ -11,7 +11,7 @@ if TYPE_CHECKING:
     from matplotlib.axes import Axes
     from matplotlib.figure import Figure
 
-    from ._core import LinearSystem, Modes, Motions, Sweep
+    from ._core import LinearSystem, Modes, Motions, OperatingPoint, Sweep, WheelRates
 
 # Okabe and Ito's colours, told apart by readers with any colour vision (from memory).
 BLUE, ORANGE, GREEN, GREY = "#0072B2", "#E69F00", "#009E73", "#999999"
@@ -331,4 +331,165 @@ def sweep(
     ax.set_ylabel("damping, %" if damping else "natural frequency, Hz")
     ax.spines[["top", "right"]].set_visible(False)
     artists.append(ax.legend(loc="upper left", bbox_to_anchor=(1.0, 1.0), frameon=False))
+    return artists
+
+
+def attitude(state: OperatingPoint, *, ax: Axes | None = None, scale: float = 1.0) -> list[Artist]:
+    """Draw how the body stands: from behind, wheels with their loads as arrows.
+
+    Parameters
+    ----------
+    state : OperatingPoint
+        Where the vehicle stands.
+    ax : matplotlib.axes.Axes, optional
+        Where to draw; a new figure otherwise.
+    scale : float
+        By how much heave, pitch and roll are exaggerated.
+
+    Returns
+    -------
+    list of matplotlib.artist.Artist
+    """
+    ax = _axes(ax, (6.0, 4.0))
+    x, y = state.linear().modes().positions
+    z, pitch, roll = state.attitude * scale
+    height = 0.75
+    body = height + z - x * pitch + y * roll
+    wheels = state.wheels * scale
+    artists: list[Artist] = []
+    for level, style in (
+        (np.full(4, height), {"color": GREY, "linestyle": ":", "linewidth": 1}),
+        (body, {"color": BLUE, "linewidth": 2, "label": "body"}),
+        (wheels, {"color": ORANGE, "linewidth": 1, "marker": "o", "markersize": 7}),
+    ):
+        across, up = _oblique(x, y, level)
+        artists.extend(ax.plot(across[ROUND], up[ROUND], **style))
+    most = max(state.tyre_load.max(), 1.0)
+    for corner in range(4):
+        across, up = _oblique(x[corner], y[corner], wheels[corner])
+        load = state.tyre_load[corner]
+        artists.append(
+            ax.annotate(
+                f"{load:.0f} N",
+                (across, up - 0.06),
+                (across, up - 0.12 - 0.45 * load / most),
+                ha="center",
+                va="top",
+                fontsize=8,
+                arrowprops={"arrowstyle": "->", "color": GREEN if load > 0 else GREY},
+            )
+        )
+    ax.set_aspect("equal")
+    ax.set_axis_off()
+    ax.set_ylim(-1.5, 1.9)
+    ax.set_title(
+        f"heave {1e3 * state.attitude[0]:.1f} mm, "
+        f"pitch {np.degrees(state.attitude[1]):.2f}°, "
+        f"roll {np.degrees(state.attitude[2]):.2f}°"
+        + (f"  (drawn {scale:g} times)" if scale != 1.0 else ""),
+        fontsize=10,
+    )
+    return artists
+
+
+def wheel_loads(sweep: Sweep, *, ax: Axes | None = None) -> list[Artist]:
+    """Draw the four tyre loads along a sweep; a wheel without load is off the ground.
+
+    Parameters
+    ----------
+    sweep : Sweep
+        States along a number or a load.
+    ax : matplotlib.axes.Axes, optional
+        Where to draw; a new figure otherwise.
+
+    Returns
+    -------
+    list of matplotlib.artist.Artist
+    """
+    ax = _axes(ax, (5.0, 3.5))
+    artists: list[Artist] = []
+    for corner, (name, color, style) in enumerate(
+        zip(CORNERS, (BLUE, ORANGE, BLUE, ORANGE), ("-", "-", "--", "--"), strict=True)
+    ):
+        load = sweep.tyre_load[:, corner] / 1e3
+        artists.extend(ax.plot(sweep.values, load, color=color, linestyle=style, label=name))
+    ax.axhline(0.0, color=GREY, linewidth=0.8)
+    ax.set_xlabel(f"{sweep.path} [{sweep.unit}]")
+    ax.set_ylabel("tyre load [kN]")
+    ax.legend(fontsize=8, frameon=False)
+    return artists
+
+
+def pressures(sweep: Sweep, *, ax: Axes | None = None) -> list[Artist]:
+    """Draw the pressure of each circuit along a sweep, with where it first passes a limit.
+
+    Parameters
+    ----------
+    sweep : Sweep
+        States along a number or a load.
+    ax : matplotlib.axes.Axes, optional
+        Where to draw; a new figure otherwise.
+
+    Returns
+    -------
+    list of matplotlib.artist.Artist
+    """
+    ax = _axes(ax, (5.0, 3.5))
+    artists: list[Artist] = []
+    colors = (BLUE, ORANGE, GREEN, GREY)
+    for place, name in enumerate(sweep.circuits):
+        pressure = sweep.pressure[:, place] / 1e5
+        color, style = colors[place % 4], "-" if place < 4 else "--"
+        artists.extend(ax.plot(sweep.values, pressure, color=color, linestyle=style, label=name))
+        for row, passed in enumerate(sweep.passed):
+            if any(limit.startswith(f"circuits.{name}.") for limit in passed):
+                limit = next(one for one in passed if one.startswith(f"circuits.{name}."))
+                artists.extend(ax.plot(sweep.values[row], pressure[row], "x", color=color))
+                artists.append(
+                    ax.annotate(
+                        limit.rsplit(".", 1)[-1].replace("_", " "),
+                        (sweep.values[row], pressure[row]),
+                        fontsize=8,
+                        color=color,
+                    )
+                )
+                break
+    ax.set_xlabel(f"{sweep.path} [{sweep.unit}]")
+    ax.set_ylabel("pressure [bar abs]")
+    if sweep.circuits:
+        ax.legend(fontsize=8, frameon=False)
+    return artists
+
+
+def wheel_rates(rates: WheelRates, *, ax: Axes | None = None) -> list[Artist]:
+    """Draw the tangent rate per wheel over travel, in each motion and at one wheel.
+
+    Parameters
+    ----------
+    rates : WheelRates
+        Of `Vehicle.wheel_rates`.
+    ax : matplotlib.axes.Axes, optional
+        Where to draw; a new figure otherwise.
+
+    Returns
+    -------
+    list of matplotlib.artist.Artist
+    """
+    ax = _axes(ax, (5.0, 3.5))
+    artists: list[Artist] = []
+    styles = ((BLUE, "-"), (ORANGE, "-"), (GREEN, "-"), (GREY, "-"), (BLUE, ":"), (ORANGE, ":"))
+    for row, (name, (color, style)) in enumerate(zip(rates.patterns, styles, strict=True)):
+        artists.extend(
+            ax.plot(
+                1e3 * rates.travel,
+                rates.rate[row] / 1e3,
+                color=color,
+                linestyle=style,
+                label=name,
+            )
+        )
+    ax.set_xlabel("travel, bump positive [mm]")
+    ax.set_ylabel("rate at one wheel [N/mm]")
+    ax.set_ylim(bottom=0.0)
+    ax.legend(fontsize=8, frameon=False, ncols=2)
     return artists

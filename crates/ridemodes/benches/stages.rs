@@ -3,7 +3,7 @@
 //! The roadster is the size a designer's loop works at; the truck (38 states) shows the growth.
 
 use divan::{Bencher, black_box};
-use ridemodes::{ModeKind, Vehicle};
+use ridemodes::{Condition, ModeKind, Vehicle};
 
 fn main() {
     divan::main();
@@ -55,4 +55,20 @@ fn damped_modes(bencher: Bencher<'_, '_>, name: &str) {
 fn motions(bencher: Bencher<'_, '_>, name: &str) {
     let state = vehicle(name).settle().unwrap();
     bencher.with_inputs(|| state.linear().unwrap()).bench_refs(|lin| lin.motions().unwrap());
+}
+
+/// One state in a corner, cold start: parts, Newton's method with seven dual directions, results read off.
+#[divan::bench(args = VEHICLES)]
+fn settle(bencher: Bencher<'_, '_>, name: &str) {
+    let car = vehicle(name);
+    let condition = Condition { lateral: 4.0, ..Condition::default() };
+    bencher.bench(|| car.settle_under(black_box(&condition)).unwrap());
+}
+
+/// A thousand lateral accelerations, each from the one before.
+#[divan::bench(args = VEHICLES, sample_count = 10)]
+fn sweep_of_states(bencher: Bencher<'_, '_>, name: &str) {
+    let car = vehicle(name);
+    let values: Vec<f64> = (0..1000).map(|k| 0.005 * f64::from(k)).collect();
+    bencher.bench(|| car.states("lateral", black_box(&values), &Condition::default()).unwrap());
 }

@@ -37,13 +37,13 @@ fn sources(folder: &Path, found: &mut Vec<PathBuf>) {
     }
 }
 
-// Numbers such as (N4) or (N1, N3) in a text.
-fn cited(text: &str) -> Vec<u32> {
+// Numbers such as (N4) or (N1, N3) of a chapter's letter in a text.
+fn cited(text: &str, letter: char) -> Vec<u32> {
     let mut numbers = Vec::new();
     for part in text.split('(').skip(1) {
         let inside = part.split(')').next().unwrap_or("");
         let all: Option<Vec<u32>> =
-            inside.split(", ").map(|one| one.strip_prefix('N').and_then(|number| number.parse().ok())).collect();
+            inside.split(", ").map(|one| one.strip_prefix(letter).and_then(|number| number.parse().ok())).collect();
         numbers.extend(all.unwrap_or_default());
     }
     numbers.sort_unstable();
@@ -51,16 +51,18 @@ fn cited(text: &str) -> Vec<u32> {
     numbers
 }
 
-// Every equation of the network chapter is cited by the code, and none that is not there.
+// Every equation of the chapters on the network and on the operating point is cited by the code, and none that is not there.
 #[test]
 fn code_and_chapter_cite_each_other() {
     let root = Path::new(env!("CARGO_MANIFEST_DIR"));
     let mut files = Vec::new();
     sources(&root.join("src"), &mut files);
     let code: String = files.iter().map(|file| fs::read_to_string(file).unwrap()).collect();
-    let chapter = cited(&fs::read_to_string(root.join("docs/network.md")).unwrap());
-    assert_eq!(chapter, (1..=16).collect::<Vec<u32>>());
-    assert_eq!(cited(&code), chapter);
+    for (letter, page, count) in [('N', "docs/network.md", 16), ('O', "docs/operating_point.md", 14)] {
+        let chapter = cited(&fs::read_to_string(root.join(page)).unwrap(), letter);
+        assert_eq!(chapter, (1..=count).collect::<Vec<u32>>());
+        assert_eq!(cited(&code, letter), chapter);
+    }
 }
 
 #[test]

@@ -109,7 +109,7 @@ fn ideal<T: Scalar>(temperature: T) -> (T, T) {
 }
 
 impl Nitrogen {
-    /// p = ρ R T (1 + δ α_δ) [Pa]
+    /// (O5) p = ρ R T (1 + δ α_δ) [Pa]
     pub(crate) fn pressure<T: Scalar>(density: T, temperature: T) -> T {
         density * temperature * GAS_CONSTANT * (residual(density, temperature).d + 1.0)
     }

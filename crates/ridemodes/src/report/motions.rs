@@ -139,8 +139,11 @@ impl LinearSystem {
                 cell(self.stiffness()[(i, i)]),
             ]);
         }
-        let table = table
-            .note("diagonals, SI; gravity moment of the leaned body left out (classical seven degrees of freedom)");
+        let table = table.note(if self.has_gravity() {
+            "diagonals, SI; gravity moment of the leaned body taken in, roll about the roll axis"
+        } else {
+            "diagonals, SI; gravity moment of the leaned body left out (classical seven degrees of freedom)"
+        });
         self.point().assumptions(false).into_iter().fold(table, Table::note)
     }
 }

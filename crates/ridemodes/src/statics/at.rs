@@ -38,7 +38,7 @@ pub(crate) struct At<T> {
 
 impl<T: Scalar> At<T> {
     /// The state of a solution with the vehicle's numbers in a scalar; the solution's derivatives by them follow from
-    /// the implicit function theorem: with the residual F(x, θ) = 0 and the tangent −∂F/∂x, dx = (−∂F/∂x)⁻¹ ∂F/∂θ dθ.
+    /// the implicit function theorem (O9): with the residual F(x, θ) = 0 and the tangent −∂F/∂x, dx = (−∂F/∂x)⁻¹ ∂F/∂θ dθ.
     pub(crate) fn new(
         car: &Vehicle,
         numbers: &[T],
@@ -86,7 +86,7 @@ impl<T: Scalar> At<T> {
                 if condition.is_design() {
                     region.held.unwrap_or(region.design_pressure)
                 } else {
-                    region.pressure(pushed, p).unwrap_or(T::constant(p))
+                    region.followed(pushed, p).unwrap_or(T::constant(p))
                 }
             })
             .collect();

@@ -387,7 +387,7 @@ fn lines_apart(
 }
 
 impl OperatingPoint {
-    /// Suspension force and tangent along a pattern of deflections s·pattern from the design height on, patternᵀF − its
+    /// (O14) Suspension force and tangent along a pattern of deflections s·pattern from the design height on, patternᵀF − its
     /// value at rest [N], [N/m]; `None` where oil has nowhere to go.
     pub(crate) fn forces_along(&self, pattern: &[f64; 4], s: f64, condition: &Condition) -> Option<(f64, f64)> {
         let numbers: Vec<Dual> = self.car.numbers().iter().map(|&number| Dual::constant(number)).collect();

@@ -9,7 +9,7 @@ use crate::numerics::Scalar;
 use crate::spec::{Slot, Stop};
 use crate::vehicle::Structure;
 
-/// A law that passes a travel on through a motion ratio that may change with it: e = MR δ + MR′ δ²/2.
+/// (O1) A law that passes a travel on through a motion ratio that may change with it: e = MR δ + MR′ δ²/2.
 #[derive(Clone, Copy, Debug)]
 pub(crate) struct Lever<T> {
     pub ratio: T,
@@ -40,7 +40,7 @@ pub(crate) struct SpringPart<T> {
 }
 
 impl<T: Scalar> SpringPart<T> {
-    /// F = F₀ + k x + k₃ x³ with x = e + seat
+    /// (O2) F = F₀ + k x + k₃ x³ with x = e + seat
     pub(crate) fn force(&self, deflection: T) -> T {
         let x = self.lever.travel(deflection) + self.seat;
         self.preload + x * (self.rate + self.cubic * x.square())
@@ -168,7 +168,7 @@ impl<T: Scalar> Region<T> {
         }
     }
 
-    // ΣV_g(p) − ΣV_g,d + V_oil (α ΔT − ∫dp/β_e) + V_added − ΣC_hose (p − p_s) + Σ∫B dδ, which is zero and falls with p
+    // (O3) ΣV_g(p) − ΣV_g,d + V_oil (α ΔT − ∫dp/β_e) + V_added − ΣC_hose (p − p_s) + Σ∫B dδ, which is zero and falls with p
     fn excess(&self, pressure: T, pushed: T) -> T {
         let mut total = pushed + self.added + self.oil * (self.growth - self.compression(pressure));
         total += -(self.hoses * (pressure - self.design_pressure));
@@ -178,7 +178,7 @@ impl<T: Scalar> Region<T> {
         total
     }
 
-    // ∫dp/β_e from p_s to p, with 1/β_e = 1/β + x₀ p_atm/(κ p²)
+    // (O4) ∫dp/β_e from p_s to p, with 1/β_e = 1/β + x₀ p_atm/(κ p²)
     fn compression(&self, pressure: T) -> T {
         self.inverse_bulk * (pressure - self.design_pressure)
             + self.air * (T::one() / self.design_pressure - T::one() / pressure)
@@ -203,42 +203,51 @@ impl<T: Scalar> Region<T> {
         let volume = T::constant(pushed.value());
         let excess = |p: f64| self.excess(T::constant(p), volume).value();
         let compliance_at = |p: f64| self.compliance(T::constant(p)).value();
-        if excess(VACUUM) <= 0.0 {
-            return Some(T::constant(VACUUM));
-        }
         // Newton in ln p, kept between bounds that close in.
         let (mut low, mut high) = (VACUUM, f64::INFINITY);
         let mut p = guess.max(2.0 * VACUUM);
         for _ in 0..200 {
             let missing = excess(p);
+            let step = missing / (compliance_at(p) * p);
+            // The step in the scalar takes the rest: it is quadratic.
+            if step.abs() <= 1e-10 {
+                break;
+            }
             if missing > 0.0 {
                 low = low.max(p);
             } else {
                 high = high.min(p);
             }
-            let compliance = compliance_at(p);
-            let step = missing / (compliance * p);
             let mut next = p * step.clamp(-2.0, 2.0).exp();
-            let inside = next > low && next < high;
-            if !(inside && step.is_finite()) {
+            if !(next > low && next < high && step.is_finite()) {
                 next = if high.is_finite() { (low * high).sqrt() } else { p * 4.0 };
             }
             if next > 1e12 {
                 return None;
             }
-            let done = (next - p).abs() <= 4.0 * f64::EPSILON * p;
+            if next < 2.0 * VACUUM && excess(VACUUM) <= 0.0 {
+                return Some(T::constant(VACUUM));
+            }
             p = next;
-            if done || high / low <= 1.0 + 4.0 * f64::EPSILON {
+            if high / low <= 1.0 + 1e-14 {
                 break;
             }
         }
-        let compliance = compliance_at(p);
-        if compliance <= 0.0 {
-            return None;
+        self.followed(pushed, p)
+    }
+
+    /// The pressure next to one that is solved: one step in the scalar, which carries the derivatives (implicit function
+    /// theorem).
+    pub(crate) fn followed(&self, pushed: T, solved: f64) -> Option<T> {
+        if let Some(held) = self.held {
+            return Some(held);
         }
-        // One step more in the scalar carries the derivatives (implicit function theorem).
-        let end = T::constant(p);
-        Some(end + self.excess(end, pushed) / T::constant(compliance))
+        let end = T::constant(solved);
+        if solved <= VACUUM {
+            return Some(end);
+        }
+        let compliance = self.compliance(end).value();
+        (compliance > 0.0).then(|| end + self.excess(end, pushed) / T::constant(compliance))
     }
 
     /// Volume of the cavity where the oil has torn off [m³].
@@ -393,7 +402,7 @@ impl<T: Scalar> Loads<T> {
         let (across, ahead) = (condition.across(), condition.ahead());
 
         let [front_down, rear_down] = condition.downforce.map(T::constant);
-        // Weight at the centre, downforce at the axles; lateral moment about the roll axis.
+        // (O6) Weight at the centre, downforce at the axles; lateral moment about the roll axis.
         let mut on_body = [
             -(mass * weight) - front_down - rear_down,
             first[0] * weight + a * front_down - b * rear_down,
@@ -407,12 +416,12 @@ impl<T: Scalar> Loads<T> {
             let unsprung = |left: bool| axle.side(left).map_or(T::zero(), |corner| value(corner.unsprung_mass));
             let own = (unsprung(true) + unsprung(false)) * value(axle.unsprung_height);
             whole += own;
-            // ±(m_axle h_R + m_u h_u) a_y/t through the links, unloading the left
+            // (O7) ±(m_axle h_R + m_u h_u) a_y/t through the links, unloading the left
             let pair = (mass * share * h_roll + own) * across / value(axle.track);
             on_wheel[left] += pair;
             on_wheel[left + 1] += -pair;
         }
-        // ΔF = m h a_x/wheelbase from front to rear; the links' share is a pair of forces between body and wheels.
+        // (O8) ΔF = m h a_x/wheelbase from front to rear; the links' share is a pair of forces between body and wheels.
         on_body[1] += -(whole * ahead);
         let transfer = whole * ahead / wheelbase;
         for (axle, gain, x, left) in [(&spec.front, -transfer, a, 0), (&spec.rear, transfer, -b, 2)] {

@@ -71,7 +71,7 @@ pub(crate) fn assemble<T: Scalar>(
         build.on_road(corner);
         let (part, delta) = (&at.parts.corners[corner.index()], at.deflection[corner.index()]);
         if let Some(spring) = &part.spring {
-            // de/dδ = MR + MR′ δ; a slope of it turns the force too: F·MR′
+            // (O10) de/dδ = MR + MR′ δ; a slope of it turns the force too: F·MR′
             let row = build.travel(corner, spring.lever.at(delta));
             build.add(&names.spring, ElementKind::Spring, row, [T::zero(), T::zero(), spring.rate(delta)]);
             if !spring.lever.slope.is_zero() {
@@ -172,7 +172,7 @@ pub(crate) fn assemble<T: Scalar>(
             };
             let [slow, fast] = at.gas[index].compliance;
             let others = compliance - slow;
-            // Beside what else gives at the node, K_iso + ΔK sτ/(1 + sτ) of the gas keeps its form: with C_o of the
+            // (O11, O12) Beside what else gives at the node, K_iso + ΔK sτ/(1 + sτ) of the gas keeps its form: with C_o of the
             // others, K = 1/(C_o + C_gas) slow and fast, and τ (1 + C_o K_ad)/(1 + C_o K_iso).
             let stiffening = T::one() / (others + fast) - T::one() / compliance;
             let longer = value(time) * (others + fast) * slow / (fast * compliance);
@@ -215,7 +215,7 @@ pub(crate) fn assemble<T: Scalar>(
     let carried = reduction.moved.iter().find_map(|(_, moved)| carried(moved));
 
     if gravity {
-        // K_φφ − m g h′ of the leaned body and M_φφ + m h′² of the same motion about the roll axis
+        // (O13) K_φφ − m g h′ of the leaned body and M_φφ + m h′² of the same motion about the roll axis
         let mut row = build.zeros();
         row[2] = T::one();
         let arm = at.parts.arm;
