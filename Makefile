@@ -35,7 +35,7 @@ STUB := python/ridemodes/_core.pyi
 GENERATE_STUB = $(DEVELOP) --generate-stubs >$(BUILD_LOG) 2>&1 || { cat $(BUILD_LOG) >&2; exit 1; }; \
 	$(BIN)/python python/stub_imports.py $(STUB)
 
-.PHONY: demo test bench stub lock lint clean
+.PHONY: demo test bench stub lock lint clean fuzz
 .NOTPARALLEL:
 .DELETE_ON_ERROR:
 
@@ -62,6 +62,11 @@ bench: $(BUILT)
 	@cargo bench --locked --quiet -p ridemodes --bench stages
 	@echo 'Python: benchmarks'
 	@$(BIN)/python python/benches/speed.py
+
+# A long campaign on the solver of the operating point, some ten minutes.
+fuzz:
+	@echo 'Rust: 100,000 random vehicles and conditions'
+	@FUZZ=100000 cargo test --locked --release --quiet any_condition
 
 stub: $(DEMO)
 	@echo 'Rewriting python/ridemodes/_core.pyi'

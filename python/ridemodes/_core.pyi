@@ -1134,6 +1134,11 @@ class Readings:
         Change of each tyre load per ground twist [N/m].
         """
     @property
+    def mass(self, /) -> float:
+        """
+        All that the tyres carry, as a mass [kg].
+        """
+    @property
     def pressure_per_braking(self, /) -> NDArray[float64]:
         """
         Change of each pressure per deceleration in braking [Pa per m/s^2].

@@ -147,10 +147,16 @@ def point_to_xarray(point: OperatingPoint) -> xarray.Dataset:
             "oil_load": (corner, point.oil_load, "N", "share carried by the oil"),
             "spring_load": (corner, point.spring_load, "N", "share carried by the spring"),
             "spring_preload": (corner, point.spring_preload, "N", "force in the spring"),
+            "stop_load": (corner, point.stop_load, "N", "share carried by the stops"),
+            "piston_travel": (corner, point.piston_travel, "m", "piston travel from mid-stroke"),
+            "wheels": (corner, point.wheels, "m", "height of the wheel"),
+            "oil_added": (circuit, point.oil_added, "m^3", "oil added"),
+            "cavity": (circuit, point.cavity, "m^3", "cavity where oil has torn off"),
+            "attitude": (("motion",), point.attitude, "m or rad", "heave, pitch, roll"),
             "pressure": (circuit, point.pressure, "Pa", "absolute pressure"),
             "gas_volume": (circuit, point.gas_volume, "m^3", "gas volume"),
         },
-        {"corner": CORNERS, "circuit": point.circuits},
+        {"corner": CORNERS, "circuit": point.circuits, "motion": ["heave", "pitch", "roll"]},
     )
 
 
@@ -227,15 +233,30 @@ def sensitivities_to_xarray(found: Sensitivities) -> xarray.Dataset:
 def sweep_to_xarray(sweep: Sweep) -> xarray.Dataset:
     """Poles over branch and value; the coordinate of the values is called `value`."""
     table = ("branch", "value")
+    corner, circuit = ("value", "corner"), ("value", "circuit")
     data = _dataset(
         {
+            "attitude": (("value", "motion"), sweep.attitude, "m or rad", "heave, pitch, roll"),
+            "deflection": (corner, sweep.deflection, "m", "suspension deflection"),
+            "tyre_load": (corner, sweep.tyre_load, "N", "vertical tyre load"),
+            "pressure": (circuit, sweep.pressure, "Pa", "absolute pressure"),
+            "gas_volume": (circuit, sweep.gas_volume, "m^3", "gas volume"),
+            "front_transfer": (("value",), sweep.front_transfer, "1", "front load transfer share"),
+            "cross_weight": (("value",), sweep.cross_weight, "1", "cross weight"),
+            "status": (("value",), sweep.status, "1", "how the state ended"),
             "label": (("branch",), sweep.label, "1", "label where the branch begins"),
             "pole": (table, sweep.pole, "rad/s", "pole"),
             "frequency": (table, sweep.frequency, "Hz", "natural frequency"),
             "damping_ratio": (table, sweep.damping_ratio, "1", "damping ratio"),
             "likeness": (("branch",), sweep.likeness, "1", "least likeness of the steps"),
         },
-        {"branch": np.arange(len(sweep.label)), "value": sweep.values},
+        {
+            "branch": np.arange(len(sweep.label)),
+            "value": sweep.values,
+            "corner": CORNERS,
+            "circuit": sweep.circuits,
+            "motion": ["heave", "pitch", "roll"],
+        },
     )
     data["value"].attrs.update({"units": sweep.unit or "1", "long_name": sweep.path})
     return data

@@ -95,6 +95,12 @@ result_class! {
         self.core.cross_weight
     }
 
+    /// All that the tyres carry, as a mass [kg].
+    #[getter]
+    fn mass(&self) -> f64 {
+        self.core.mass
+    }
+
     /// Lift of the body at 5 m/s^2 of lateral acceleration [m].
     #[getter]
     fn lift_in_corner(&self) -> f64 {

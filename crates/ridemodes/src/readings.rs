@@ -7,6 +7,7 @@ use crate::axes::MOTIONS;
 use crate::error::{Error, Result};
 use crate::states::varied;
 use crate::statics::{Condition, Fault, OperatingPoint};
+use crate::units::STANDARD_GRAVITY;
 use crate::vehicle::Vehicle;
 
 /// Readings about a state, of slow (isothermal, slow lines open) or fast (no heat exchange) changes.
@@ -34,8 +35,10 @@ pub struct Readings {
     pub lateral_at_lift: f64,
     /// Slope across at which the first wheel lifts; NaN if none does below 1.2 rad [rad].
     pub slope_at_lift: f64,
-    /// Cross weight (FR + RL)/ΣF and the load it is off half [N].
+    /// Cross weight (FR + RL)/ΣF of the tyre loads.
     pub cross_weight: f64,
+    /// All that the tyres carry, as a mass [kg].
+    pub mass: f64,
     /// Change of each pressure per lateral acceleration [Pa per m/s²].
     pub pressure_per_lateral: Vec<f64>,
     /// Change of each pressure per deceleration in braking [Pa per m/s²].
@@ -132,6 +135,7 @@ impl Vehicle {
             slope_at_lift: first_lift(&here, &|value| at("side_slope", base.side_slope + value), 1.2)?
                 + base.side_slope,
             cross_weight: here.cross_weight(),
+            mass: here.tyre_load.as_array().iter().sum::<f64>() / STANDARD_GRAVITY,
             pressure_per_lateral: pressures(&corner, STEP),
             pressure_per_braking: pressures(&braking, STEP).into_iter().map(|slope| -slope).collect(),
             lift_in_corner: lift,

@@ -493,7 +493,7 @@ fn stopped(mut car: Value) -> Value {
 }
 
 proptest! {
-    #![proptest_config(fixed(if std::env::var_os("FUZZ").is_some() { 50_000 } else { 800 }))]
+    #![proptest_config(fixed(std::env::var("FUZZ").ok().and_then(|count| count.parse().ok()).unwrap_or(800)))]
 
     // Settles in balance, or says in a typed error that it does not; nothing hangs and no NaN comes out.
     #[test]

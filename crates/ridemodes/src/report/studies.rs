@@ -57,6 +57,7 @@ impl Readings {
         line("lateral at first wheel lift m/s²", &|r| fixed(r.lateral_at_lift, 2));
         line("side slope at first wheel lift deg", &|r| fixed(r.slope_at_lift.to_degrees(), 1));
         line("cross weight %", &|r| percent(r.cross_weight));
+        line("cross weight kg", &|r| fixed(r.cross_weight * r.mass, 1));
         line("lift at 5 m/s² mm", &|r| fixed(1e3 * r.lift_in_corner, 2));
         line("ride frequency front Hz", &|r| fixed(r.ride_frequency[0], 3));
         line("ride frequency rear Hz", &|r| fixed(r.ride_frequency[1], 3));

@@ -426,6 +426,32 @@ impl OperatingPoint {
         (load[1] + load[2]) / load.iter().sum::<f64>()
     }
 
+    /// The slope of the forces on body and wheels by central differences, −∂F/∂(z, θ, φ, w), pressures solved anew.
+    #[cfg(test)]
+    pub(crate) fn numeric_tangent(&self, step: f64) -> [[f64; 7]; 7] {
+        let at: At<f64> = self.at(self.car.numbers());
+        let forces = |unknowns: &[f64; 7]| {
+            let deflection = parts::deflections(&at.parts, unknowns);
+            let regions = at.parts.regions.iter().zip(&at.pressure);
+            let pressure: Option<Vec<f64>> =
+                regions.map(|(region, &p)| region.pressure(region.pushed(&deflection), p)).collect();
+            pressure.map(|pressure| parts::imbalance(&at.parts, unknowns, &pressure, self.condition.weight()))
+        };
+        let mut slope = [[0.0; 7]; 7];
+        for column in 0..7 {
+            let moved = |sign: f64| {
+                let mut unknowns = self.solution.unknowns;
+                unknowns[column] += sign * step;
+                forces(&unknowns).unwrap_or([f64::NAN; 7])
+            };
+            let (above, below) = (moved(1.0), moved(-1.0));
+            for row in 0..7 {
+                slope[row][column] = -(above[row] - below[row]) / (2.0 * step);
+            }
+        }
+        slope
+    }
+
     /// The state with the vehicle's numbers in any scalar.
     pub(crate) fn at<T: Scalar>(&self, numbers: &[T]) -> At<T> {
         At::new(&self.car, numbers, &self.condition, &self.charge, &self.solution, self.standing.as_ref())
@@ -457,5 +483,58 @@ impl OperatingPoint {
     /// The vehicle that stands there.
     pub fn vehicle(&self) -> &Vehicle {
         &self.vehicle
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::parts::deflections;
+    use super::*;
+
+    pub(crate) fn loaded() -> Condition {
+        Condition {
+            lateral: 2.5,
+            longitudinal: -1.0,
+            temperature: Some(315.0),
+            payload: vec![Payload { mass: 80.0, x: -0.3, y: 0.2, z: 0.1 }],
+            heights: [0.012, 0.0, -0.01, 0.0],
+            ..Condition::default()
+        }
+    }
+
+    // The state is a minimum of the total potential: along random ways off it the work against the imbalance, which is
+    // minus its gradient, is positive. Simpson's rule along each way.
+    #[test]
+    fn no_way_off_a_state_gains_energy() {
+        let mut seed = 0.37_f64;
+        let mut random = move || {
+            seed = (seed * 997.0 + 0.123).fract();
+            2.0 * seed - 1.0
+        };
+        for name in Vehicle::examples() {
+            let car = Vehicle::example(name).unwrap();
+            let point = car.settle_under(&loaded()).unwrap();
+            let at: At<f64> = point.at(point.car.numbers());
+            let weight = point.condition.weight();
+            let imbalance = |unknowns: &[f64; 7]| {
+                let deflection = deflections(&at.parts, unknowns);
+                let regions = at.parts.regions.iter().zip(&at.pressure);
+                let pressure: Option<Vec<f64>> =
+                    regions.map(|(region, &p)| region.pressure(region.pushed(&deflection), p)).collect();
+                parts::imbalance(&at.parts, unknowns, &pressure.unwrap(), weight)
+            };
+            for _ in 0..60 {
+                let way: [f64; 7] = std::array::from_fn(|_| 0.008 * random());
+                let push = |s: f64| -> f64 {
+                    let unknowns = std::array::from_fn(|i| point.solution.unknowns[i] + s * way[i]);
+                    -imbalance(&unknowns).iter().zip(&way).map(|(force, part)| force * part).sum::<f64>()
+                };
+                let work: f64 = (0..=20)
+                    .map(|k| f64::from(if k == 0 || k == 20 { 1 } else { 2 + 2 * (k % 2) }) * push(f64::from(k) / 20.0))
+                    .sum::<f64>()
+                    / 60.0;
+                assert!(work > 0.0, "{name}: {work} along {way:?}");
+            }
+        }
     }
 }

@@ -424,3 +424,79 @@ impl LinearSystem {
 pub(crate) fn mechanical_names() -> impl Iterator<Item = Arc<str>> {
     MECHANICAL_NAMES.into_iter().map(Arc::from)
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::statics::{Condition, Payload};
+    use crate::vehicle::Vehicle;
+
+    // K at a state, volumes and inner coordinates condensed, against central differences of the nonlinear forces: at rest,
+    // in a corner, on a stop, with a motion ratio that changes, with real nitrogen, with relaxation.
+    #[test]
+    fn stiffness_is_the_slope_of_the_forces() {
+        let mut hard = Vehicle::example("roadster").unwrap().to_value();
+        for axle in ["front", "rear"] {
+            let corner = &mut hard[axle]["both"];
+            corner["bump_stop"] = serde_json::json!({ "gap": 0.01, "rate": 4e4, "cubic": 3e7 });
+            corner["spring"]["motion_ratio_slope"] = 0.8.into();
+            corner["spring"]["cubic"] = 4e6.into();
+            corner["cylinder"]["motion_ratio_slope"] = (-0.6).into();
+        }
+        let mut nitrogen = hard.clone();
+        nitrogen["layout"]["accumulators"]["main"]["gas"] = "nitrogen".into();
+        let mut relaxing = hard.clone();
+        relaxing["layout"]["accumulators"]["main"]["relaxation_time"] = 5.0.into();
+        let cars = [
+            (Vehicle::example("roadster").unwrap(), true),
+            (Vehicle::example("field_sprayer").unwrap(), true),
+            (Vehicle::from_value(&hard).unwrap(), true),
+            (Vehicle::from_value(&nitrogen).unwrap(), true),
+            (Vehicle::from_value(&relaxing).unwrap(), false),
+        ];
+        for (car, fast) in &cars {
+            for lateral in [0.0, 3.0, 5.5] {
+                let condition = Condition {
+                    lateral,
+                    longitudinal: -2.0,
+                    temperature: Some(305.0),
+                    fast: *fast,
+                    ..Condition::default()
+                };
+                let point = car.settle_under(&condition).unwrap();
+                let lin = point.linear_with_gravity().unwrap();
+                let lin = lin.with_slow_lines_shut().unwrap();
+                let n = lin.coordinates().len();
+                let unit: Vec<f64> = (0..n).map(|i| 1.0 / lin.stiffness()[(i, i)].abs().sqrt()).collect();
+                let part = |rows: std::ops::Range<usize>, columns: std::ops::Range<usize>| {
+                    let (first, left) = (rows.start, columns.start);
+                    DMatrix::from_fn(rows.len(), columns.len(), |i, j| {
+                        let (i, j) = (i + first, j + left);
+                        lin.stiffness()[(i, j)] * unit[i] * unit[j]
+                    })
+                };
+                let across = part(7..n, 0..7);
+                let solved = part(7..n, 7..n).lu().solve(&across).unwrap();
+                let condensed = part(0..7, 0..7) - across.transpose() * solved;
+                let numeric = point.numeric_tangent(1e-5);
+                let largest = numeric.iter().flatten().fold(0.0_f64, |most, entry| most.max(entry.abs()));
+                for i in 0..7 {
+                    for j in 0..7 {
+                        let found = condensed[(i, j)] / (unit[i] * unit[j]);
+                        let error = (found - numeric[i][j]).abs();
+                        assert!(error <= 1e-7 * largest, "{lateral} {i} {j}: {found} against {}", numeric[i][j]);
+                    }
+                }
+            }
+        }
+        // Payload: the same about the common centre of gravity, whose height is z less the lever of the attitude.
+        let car = &cars[0].0;
+        let payload = vec![Payload { mass: 120.0, x: -0.5, y: 0.3, z: 0.2 }];
+        let lin = car.settle_under(&Condition { payload, ..Condition::default() }).unwrap().linear().unwrap();
+        assert!((lin.mass()[(0, 0)] - 1200.0).abs() < 1e-9);
+        let reduced = 120.0 * 1080.0 / 1200.0;
+        assert!((lin.mass()[(2, 2)] - (390.0 + reduced * (0.09 + 0.04))).abs() < 1e-9);
+        assert!((lin.mass()[(1, 1)] - (1480.0 + reduced * (0.25 + 0.04))).abs() < 1e-9);
+        assert!((lin.mass()[(1, 2)] - (14.0 + reduced * 0.15)).abs() < 1e-9);
+    }
+}
