@@ -171,6 +171,16 @@ def test_sweep_of_a_load_is_its_states(car):
         np.testing.assert_allclose(sweep.tyre_load[row], one.tyre_load, rtol=1e-8)
         np.testing.assert_allclose(back.pressure[len(values) - 1 - row], one.pressure, rtol=1e-8)
     assert sweep.status == ["solved"] * len(values)
+    # The slope at each state, against differences of the states.
+    h = 1e-3
+    for row in (0, 6, 11):
+        pair = [car.settle(lateral=values[row] + s * h, temperature=305.0) for s in (1, -1)]
+        roll = (pair[0].attitude[2] - pair[1].attitude[2]) / (2 * h)
+        pressure = (pair[0].pressure - pair[1].pressure) / (2 * h)
+        assert sweep.roll_gradient[row] == pytest.approx(roll, rel=1e-6)
+        np.testing.assert_allclose(sweep.pressure_per_lateral[row], pressure, rtol=1e-6)
+    pitch = [car.settle(longitudinal=a, temperature=305.0).attitude[1] for a in (h, 0.0)]
+    assert sweep.pitch_gradient[0] == pytest.approx((pitch[0] - pitch[1]) / h, rel=1e-4)
     # Modes follow too: the squeezed circuit stiffens more than the other softens.
     rolls = sweep.frequency[sweep.label.index("body roll")]
     assert rolls[-1] > rolls[0]

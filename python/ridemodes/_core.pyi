@@ -1466,6 +1466,11 @@ class Sweep:
         Path or keyword that is varied.
         """
     @property
+    def pitch_gradient(self, /) -> NDArray[float64]:
+        """
+        Pitch per longitudinal acceleration at each state, nose down positive [rad per m/s^2].
+        """
+    @property
     def pole(self, /) -> NDArray[complex128]:
         """
         Poles, branches x values [rad/s].
@@ -1474,6 +1479,16 @@ class Sweep:
     def pressure(self, /) -> NDArray[float64]:
         """
         Absolute pressures, values x circuits [Pa].
+        """
+    @property
+    def pressure_per_lateral(self, /) -> NDArray[float64]:
+        """
+        Pressure per lateral acceleration at each state, values x circuits [Pa per m/s^2].
+        """
+    @property
+    def roll_gradient(self, /) -> NDArray[float64]:
+        """
+        Roll per lateral acceleration at each state [rad per m/s^2].
         """
     @property
     def row(self, /) -> NDArray[float64]:

@@ -28,7 +28,7 @@ pub(crate) struct SweepCore {
 pub(crate) struct Sweep {
     core: SweepCore,
     followed: OnceLock<ridemodes::Result<ridemodes::Sweep>>,
-    kept: [Kept; 13],
+    kept: [Kept; 16],
 }
 
 impl Sweep {
@@ -114,6 +114,24 @@ result_class! {
     #[getter]
     fn front_transfer<'py>(&self, py: Python<'py>) -> PyResult<Real<'py>> {
         self.kept[11].real(py, || Ok(vector(&self.core.states.front_transfer)))
+    }
+
+    /// Roll per lateral acceleration at each state [rad per m/s^2].
+    #[getter]
+    fn roll_gradient<'py>(&self, py: Python<'py>) -> PyResult<Real<'py>> {
+        self.kept[13].real(py, || Ok(vector(&self.core.states.roll_gradient)))
+    }
+
+    /// Pitch per longitudinal acceleration at each state, nose down positive [rad per m/s^2].
+    #[getter]
+    fn pitch_gradient<'py>(&self, py: Python<'py>) -> PyResult<Real<'py>> {
+        self.kept[14].real(py, || Ok(vector(&self.core.states.pitch_gradient)))
+    }
+
+    /// Pressure per lateral acceleration at each state, values x circuits [Pa per m/s^2].
+    #[getter]
+    fn pressure_per_lateral<'py>(&self, py: Python<'py>) -> PyResult<Real<'py>> {
+        self.kept[15].real(py, || Ok(self.core.states.pressure_per_lateral.clone()))
     }
 
     /// Cross weight of the tyre loads, (FR + RL) over all.

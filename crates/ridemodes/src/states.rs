@@ -56,6 +56,12 @@ pub struct States {
     pub front_transfer: Vec<f64>,
     /// (FR + RL)/ΣF of the tyre loads (values).
     pub cross_weight: Vec<f64>,
+    /// Roll per lateral acceleration at each state (values) [rad per m/s²].
+    pub roll_gradient: Vec<f64>,
+    /// Pitch per longitudinal acceleration at each state, nose down positive (values) [rad per m/s²].
+    pub pitch_gradient: Vec<f64>,
+    /// Pressure per lateral acceleration at each state (values × circuits) [Pa per m/s²].
+    pub pressure_per_lateral: Array2<f64>,
     /// Names of the limits that are passed, at each value.
     pub passed: Vec<Vec<String>>,
     /// `solved`, or the name of the error, at each value.
@@ -171,6 +177,9 @@ impl Vehicle {
             gas_volume: blank(circuits.len()),
             front_transfer: vec![f64::NAN; values.len()],
             cross_weight: vec![f64::NAN; values.len()],
+            roll_gradient: vec![f64::NAN; values.len()],
+            pitch_gradient: vec![f64::NAN; values.len()],
+            pressure_per_lateral: blank(circuits.len()),
             passed: vec![Vec::new(); values.len()],
             status: vec![String::new(); values.len()],
             circuits,
@@ -202,6 +211,11 @@ impl States {
         fill(&mut self.tyre_load, point.tyre_load.as_array());
         fill(&mut self.pressure, &point.pressure);
         fill(&mut self.gas_volume, &point.gas_volume);
+        if let Some([lateral, longitudinal]) = point.load_slopes() {
+            self.roll_gradient[row] = lateral.unknowns[2];
+            self.pitch_gradient[row] = longitudinal.unknowns[1];
+            fill(&mut self.pressure_per_lateral, &lateral.pressure);
+        }
         self.front_transfer[row] = point.front_transfer();
         self.cross_weight[row] = point.cross_weight();
         let passed = point.limits.iter().filter(|limit| limit.is_passed());

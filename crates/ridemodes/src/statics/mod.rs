@@ -386,7 +386,49 @@ fn lines_apart(
     (slow_lines, closed_off)
 }
 
+/// How a state answers to a load.
+#[derive(Clone, Debug, PartialEq)]
+pub(crate) struct LoadSlope {
+    /// Heave, pitch, roll and wheels per load.
+    pub unknowns: [f64; 7],
+    /// Pressure of each circuit per load.
+    pub pressure: Vec<f64>,
+}
+
 impl OperatingPoint {
+    /// Slopes by lateral and by longitudinal acceleration, (O9) in the loads, which are linear in both; `None` where the
+    /// state is at the verge of tipping over.
+    pub(crate) fn load_slopes(&self) -> Option<[LoadSlope; 2]> {
+        let numbers = self.car.numbers();
+        let plain: Vec<Dual> = numbers.iter().map(|&number| Dual::constant(number)).collect();
+        let at = self.at(&plain);
+        let Solution { unknowns, pressure, .. } = &self.solution;
+        let inverse = solver::tangent(&at.parts, unknowns, pressure, self.condition.weight())?.try_inverse()?;
+        let structure = self.car.structure();
+        let here = parts::external_loads(structure, numbers, &self.condition);
+        let slope = |change: &dyn Fn(&mut Condition)| {
+            let mut condition = self.condition.clone();
+            change(&mut condition);
+            let there = parts::external_loads(structure, numbers, &condition);
+            let moved = inverse * nalgebra::SVector::<f64, 7>::from_fn(|i, _| there[i] - here[i]);
+            let seeded: [Dual; 7] = std::array::from_fn(|i| Dual { value: unknowns[i], derivative: moved[i] });
+            let deflection = parts::deflections(&at.parts, &seeded);
+            let mut by_circuit = vec![0.0; self.circuits.len()];
+            for (region, &p) in at.parts.regions.iter().zip(pressure) {
+                let slope = region.followed(region.pushed(&deflection), p).map_or(0.0, |p| p.derivative);
+                for &circuit in &region.hubs {
+                    by_circuit[circuit] = slope;
+                }
+            }
+            LoadSlope { unknowns: moved.into(), pressure: by_circuit }
+        };
+        // Braking and drive have other shares through the links: the change keeps to the side it is on.
+        let ahead = if self.condition.ahead() < 0.0 { -1.0 } else { 1.0 };
+        let mut longitudinal = slope(&|condition| condition.longitudinal += ahead);
+        longitudinal.unknowns.iter_mut().chain(&mut longitudinal.pressure).for_each(|part| *part *= ahead);
+        Some([slope(&|condition| condition.lateral += 1.0), longitudinal])
+    }
+
     /// (O14) Suspension force and tangent along a pattern of deflections s·pattern from the design height on, patternᵀF − its
     /// value at rest [N], [N/m]; `None` where oil has nowhere to go.
     pub(crate) fn forces_along(&self, pattern: &[f64; 4], s: f64, condition: &Condition) -> Option<(f64, f64)> {

@@ -353,6 +353,12 @@ impl<T: Scalar> Parts<T> {
     }
 }
 
+/// External forces on body (z, pitch, roll) and wheels under a condition, but for gravity of the wheels.
+pub(crate) fn external_loads<T: Scalar>(structure: &Structure, numbers: &[T], condition: &Condition) -> [T; 7] {
+    let loads = Loads::new(structure, numbers, condition);
+    std::array::from_fn(|i| if i < 3 { loads.on_body[i] } else { loads.on_wheel[i - 3] })
+}
+
 // Share of each corner load that oil carries at the design condition, Bᵀ(p_s − p_atm).
 fn oil_loads<T: Scalar>(structure: &Structure, numbers: &[T]) -> PerCorner<T> {
     let spec = &structure.spec;

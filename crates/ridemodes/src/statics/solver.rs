@@ -146,7 +146,7 @@ pub(crate) fn failed(parts: &Parts<f64>, unknowns: &[f64; 7], iterations: usize,
     let what = match off {
         0 => "the static equilibrium".to_owned(),
         1 => "the static equilibrium with one wheel off the ground".to_owned(),
-        _ => format!("the static equilibrium with {off} wheels off the ground"),
+        _ => format!("the static equilibrium with {off} wheels off the ground (does it tip over?)"),
     };
     Error::NotConverged { what, iterations, residual, last: unknowns.to_vec() }
 }
