@@ -13,7 +13,7 @@ from numpy.typing import NDArray
 from os import PathLike
 from typing import Any, Final, SupportsFloat, SupportsIndex, final
 
-__all__ = ["CAUTION", "VERSION", "ClosedOff", "Decoupling", "Element", "Fault", "Limit", "LinearSystem", "Modes", "Motions", "OperatingPoint", "Parameter", "Payload", "Readings", "Sensitivities", "SlowLine", "StateSpace", "Sweep", "Table", "Vehicle", "WheelRates", "example", "examples", "load", "loads", "schema"]
+__all__ = ["CAUTION", "VERSION", "ClosedOff", "Decoupling", "Element", "Fault", "FrequencyResponse", "Limit", "LinearSystem", "Modes", "Motions", "OperatingPoint", "Parameter", "Payload", "Readings", "Sensitivities", "SlowLine", "StateSpace", "Sweep", "Table", "Vehicle", "WheelRates", "example", "examples", "load", "loads", "schema"]
 
 CAUTION: Final[str]
 """
@@ -261,6 +261,75 @@ class Fault:
         """
 
 @final
+class FrequencyResponse:
+    """
+    Responses of outputs to inputs, outputs x inputs x frequencies, for motions e^(j 2 pi f t).
+    """
+    def __copy__(self, /) -> FrequencyResponse: ...
+    def __deepcopy__(self, /, _memo: Any) -> FrequencyResponse: ...
+    def __eq__(self, other: object, /) -> bool: ...
+    def __reduce__(self, /) -> "tuple[object, tuple[bytes]]": ...
+    def __repr__(self, /) -> str: ...
+    def __str__(self, /) -> str: ...
+    def _repr_html_(self, /) -> str: ...
+    @staticmethod
+    def _restore(data: bytes) -> FrequencyResponse: ...
+    @property
+    def frequency(self, /) -> NDArray[float64]:
+        """
+        Frequencies [Hz].
+        """
+    def in_motions(self, /) -> FrequencyResponse:
+        """
+        The same with the road in heave, pitch, roll and warp in place of the four wheels.
+
+        Returns
+        -------
+        FrequencyResponse
+        """
+    @property
+    def input_units(self, /) -> list[str]:
+        """
+        Units of the inputs.
+        """
+    @property
+    def inputs(self, /) -> list[str]:
+        """
+        Names of the inputs.
+        """
+    @property
+    def output_units(self, /) -> list[str]:
+        """
+        Units of the outputs.
+        """
+    @property
+    def outputs(self, /) -> list[str]:
+        """
+        Names of the outputs.
+        """
+    @property
+    def response(self, /) -> NDArray[complex128]:
+        """
+        Complex responses, outputs x inputs x frequencies.
+        """
+    def table(self, /) -> Table:
+        """
+        Largest gain of each output to each road input, and where it is, as a table.
+
+        Returns
+        -------
+        Table
+        """
+    def to_xarray(self, /) -> "xarray.Dataset":
+        """
+        The responses as an `xarray.Dataset`.
+
+        Returns
+        -------
+        xarray.Dataset
+        """
+
+@final
 class Limit:
     """
     A limit with the margin to it.
@@ -377,6 +446,27 @@ class LinearSystem:
     def elements(self, /) -> list[Element]:
         """
         The elements that the matrices are made of, the body's mass apart.
+        """
+    def frequency_response(self, /, frequency: "numpy.typing.ArrayLike | None" = None) -> "FrequencyResponse":
+        """
+        Response to the road under each wheel, to force and moments on the body and to volume put into the nodes.
+
+        Outputs are body accelerations, accelerations of the seats, deflections, changes of tyre load (compression
+        positive), pressures of the nodes and flows of the lines. Every equation is solved as it stands at each frequency.
+
+        Parameters
+        ----------
+        frequency : float or array_like, optional
+            Frequencies [Hz]; left out, a grid from 0.05 to 50 Hz that lies closer about every pole.
+
+        Returns
+        -------
+        FrequencyResponse
+
+        Raises
+        ------
+        Singular
+            At an undamped resonance.
         """
     @property
     def mass(self, /) -> NDArray[float64]:

@@ -12,7 +12,15 @@ if TYPE_CHECKING:
     import pandas
     import xarray
 
-    from ._core import LinearSystem, Modes, Motions, OperatingPoint, Sensitivities, Sweep
+    from ._core import (
+        FrequencyResponse,
+        LinearSystem,
+        Modes,
+        Motions,
+        OperatingPoint,
+        Sensitivities,
+        Sweep,
+    )
 
 CORNERS = ["front_left", "front_right", "rear_left", "rear_right"]
 SCHEMA_VERSION = 1
@@ -259,4 +267,22 @@ def sweep_to_xarray(sweep: Sweep) -> xarray.Dataset:
         },
     )
     data["value"].attrs.update({"units": sweep.unit or "1", "long_name": sweep.path})
+    return data
+
+
+def response_to_xarray(response: FrequencyResponse) -> xarray.Dataset:
+    """Complex responses over output, input and frequency."""
+    data = _dataset(
+        {
+            "response": (("output", "input", "frequency"), response.response, "SI", "response"),
+            "output_unit": (("output",), response.output_units, "1", "unit of the output"),
+            "input_unit": (("input",), response.input_units, "1", "unit of the input"),
+        },
+        {
+            "output": response.outputs,
+            "input": response.inputs,
+            "frequency": response.frequency,
+        },
+    )
+    data["frequency"].attrs.update({"units": "Hz", "long_name": "frequency"})
     return data

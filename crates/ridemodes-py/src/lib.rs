@@ -4,6 +4,7 @@ mod arrays;
 mod condition;
 mod convert;
 mod errors;
+mod frequency;
 mod linear;
 mod modes;
 mod motions;
@@ -21,6 +22,8 @@ mod _core {
 
     #[pymodule_export]
     use crate::condition::{Fault, Payload};
+    #[pymodule_export]
+    use crate::frequency::FrequencyResponse;
     #[pymodule_export]
     use crate::linear::{Element, LinearSystem, StateSpace};
     #[pymodule_export]

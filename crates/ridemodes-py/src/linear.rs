@@ -7,6 +7,7 @@ use ridemodes::{LinearSystem as Core, ModeKind};
 use crate::arrays::{Complex, Kept, Real, Reals, matrix, read_only, vector};
 use crate::convert::frequencies;
 use crate::errors::{labelled, raise};
+use crate::frequency::FrequencyResponse;
 use crate::modes::Modes;
 use crate::motions::Motions;
 use crate::point::OperatingPoint;
@@ -216,6 +217,34 @@ result_class! {
         let frequency = frequencies(frequency)?;
         let result = py.detach(|| self.core.dynamic_coupling(&frequency)).map_err(raise)?;
         read_only(py, result).map(Complex)
+    }
+
+    /// Response to the road under each wheel, to force and moments on the body and to volume put into the nodes.
+    ///
+    /// Outputs are body accelerations, accelerations of the seats, deflections, changes of tyre load (compression
+    /// positive), pressures of the nodes and flows of the lines. Every equation is solved as it stands at each frequency.
+    ///
+    /// Parameters
+    /// ----------
+    /// frequency : float or array_like, optional
+    ///     Frequencies [Hz]; left out, a grid from 0.05 to 50 Hz that lies closer about every pole.
+    ///
+    /// Returns
+    /// -------
+    /// FrequencyResponse
+    ///
+    /// Raises
+    /// ------
+    /// Singular
+    ///     At an undamped resonance.
+    #[pyo3(signature = (frequency: "numpy.typing.ArrayLike | None" = None) -> "FrequencyResponse")]
+    fn frequency_response(&self, py: Python<'_>, frequency: Option<&Bound<'_, PyAny>>) -> PyResult<FrequencyResponse> {
+        let given = frequency.map(frequencies).transpose()?;
+        let respond = || {
+            let grid = given.map_or_else(|| self.core.frequency_grid(0.05, 50.0), Ok)?;
+            self.core.frequency_response(&grid)
+        };
+        py.detach(respond).map(FrequencyResponse::new).map_err(raise)
     }
 
     /// Stiffness and damping in heave, pitch, roll and warp.

@@ -39,6 +39,7 @@ mod decoupling;
 mod equivalent;
 mod error;
 mod examples;
+mod frequency;
 mod gas;
 mod hydraulics;
 mod modes;
@@ -62,6 +63,7 @@ pub use axes::{CORNER_NAMES, CORNERS, Corner, MECHANICAL_NAMES, MOTION_NAMES, MO
 pub use corner_motions::{MotionMatrix, Motions, RollStiffness};
 pub use decoupling::{Decoupling, Remedy};
 pub use error::{Error, Result, Violation};
+pub use frequency::FrequencyResponse;
 pub use modes::{MOTION_SHARE_NAMES, ModeKind, Modes, SHARE_NAMES};
 pub use numerics::{Dual, Scalar};
 pub use readings::{PATTERN_NAMES, Readings, WheelRates};

@@ -4,7 +4,7 @@ use std::fs;
 use std::path::{Path, PathBuf};
 
 /// Modules of `src` from the lowest layer to the highest; those of one layer stand in one row.
-const LAYERS: [&[&str]; 12] = [
+const LAYERS: [&[&str]; 13] = [
     &["error", "axes", "units", "numerics"],
     &["spec"],
     &["equivalent", "gas"],
@@ -14,6 +14,7 @@ const LAYERS: [&[&str]; 12] = [
     &["states"],
     &["system"],
     &["corner_motions", "modes"],
+    &["frequency"],
     &["decoupling", "readings", "sensitivities", "sweep"],
     &["report"],
     &["examples"],

@@ -11,7 +11,7 @@ use num_complex::Complex64;
 use super::RawMode;
 use super::undamped::{elastic, whiten};
 use crate::error::{Error, Result};
-use crate::numerics::solve_symmetric;
+use crate::numerics::SymmetricFactor;
 use crate::system::{Canonical, LinearSystem};
 
 /// Poles in the closed upper half-plane with their shapes, by ascending |λ|.
@@ -147,7 +147,7 @@ fn polish(system: &LinearSystem, mode: &mut RawMode, reach: f64) {
         // At a pole exact to the last digit the matrix may come out singular; next to it it is not.
         let near = || &dynamic + DMatrix::from_diagonal_element(n, n, Complex64::from(4.0 * f64::EPSILON));
         let improves = |x: &DVector<Complex64>| x.norm().is_finite() && residual(x) < before;
-        let better = Some(solve_symmetric(dynamic.clone(), &right))
+        let better = Some(SymmetricFactor::new(dynamic.clone()).solve(&right))
             .filter(|x| x.norm().is_finite() && residual(x) <= CLEAN.max(1e-3 * before))
             .or_else(|| dynamic.clone().lu().solve(&right).filter(improves))
             .or_else(|| near().lu().solve(&right).filter(improves));

@@ -10,4 +10,4 @@ pub(crate) use assignment::best_assignment;
 pub(crate) use cholesky::rank_revealing;
 pub use dual::Dual;
 pub use scalar::Scalar;
-pub(crate) use symmetric::solve_symmetric;
+pub(crate) use symmetric::SymmetricFactor;

@@ -3,36 +3,53 @@
 use nalgebra::{DMatrix, DVector};
 use num_complex::Complex64;
 
-/// Solves A x = b for a complex symmetric A (transposed, not conjugated) by A = L D Lᵀ without pivoting, at a quarter
-/// of the cost of a pivoted factorisation of these sizes. The result is to be checked by its residual.
-pub(crate) fn solve_symmetric(mut a: DMatrix<Complex64>, b: &DVector<Complex64>) -> DVector<Complex64> {
-    let n = b.len();
-    let mut x = b.clone();
-    let entries = a.as_mut_slice();
-    // Columns below the diagonal become L, the diagonal D.
-    for k in 0..n {
-        let inverse = entries[k * n + k].inv();
-        for j in k + 1..n {
-            let factor = entries[k * n + j] * inverse;
-            for i in j..n {
-                let own = entries[k * n + i];
-                entries[j * n + i] -= factor * own;
+/// A = L D Lᵀ of a complex symmetric A (transposed, not conjugated) without pivoting, at a quarter of the cost of a
+/// pivoted factorisation of these sizes. What it solves is to be checked by its residual.
+pub(crate) struct SymmetricFactor {
+    /// Column by column: L below the diagonal, 1/D on it.
+    entries: DMatrix<Complex64>,
+}
+
+impl SymmetricFactor {
+    pub(crate) fn new(mut matrix: DMatrix<Complex64>) -> Self {
+        let n = matrix.nrows();
+        let entries = matrix.as_mut_slice();
+        for k in 0..n {
+            let inverse = entries[k * n + k].inv();
+            for j in k + 1..n {
+                let factor = entries[k * n + j] * inverse;
+                for i in j..n {
+                    let own = entries[k * n + i];
+                    entries[j * n + i] -= factor * own;
+                }
+            }
+            for i in k + 1..n {
+                entries[k * n + i] *= inverse;
+            }
+            entries[k * n + k] = inverse;
+        }
+        Self { entries: matrix }
+    }
+
+    pub(crate) fn solve(&self, right: &DVector<Complex64>) -> DVector<Complex64> {
+        let n = right.len();
+        let entries = self.entries.as_slice();
+        let mut x = right.clone();
+        for k in 0..n {
+            let own = x[k];
+            for i in k + 1..n {
+                x[i] -= entries[k * n + i] * own;
+            }
+            x[k] = own * entries[k * n + k];
+        }
+        for k in (0..n).rev() {
+            for i in k + 1..n {
+                let above = x[i];
+                x[k] -= entries[k * n + i] * above;
             }
         }
-        let own = x[k];
-        for i in k + 1..n {
-            entries[k * n + i] *= inverse;
-            x[i] -= entries[k * n + i] * own;
-        }
-        x[k] = own * inverse;
+        x
     }
-    for k in (0..n).rev() {
-        for i in k + 1..n {
-            let above = x[i];
-            x[k] -= entries[k * n + i] * above;
-        }
-    }
-    x
 }
 
 #[cfg(test)]
@@ -49,6 +66,6 @@ mod tests {
         let a = DMatrix::from_fn(n, n, entry);
         let b = DVector::from_fn(n, |i, _| Complex64::new(1.0 + i as f64, -0.5 * i as f64));
         let expected = a.clone().lu().solve(&b).unwrap();
-        assert!((solve_symmetric(a, &b) - &expected).norm() <= 1e-13 * expected.norm());
+        assert!((SymmetricFactor::new(a).solve(&b) - &expected).norm() <= 1e-13 * expected.norm());
     }
 }

@@ -1,5 +1,6 @@
 //! Tables for people: text for terminals, HTML for notebooks, units in the headings.
 
+mod frequency;
 mod modes;
 mod motions;
 mod sensitivities;

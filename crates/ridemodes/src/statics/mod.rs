@@ -454,6 +454,18 @@ impl OperatingPoint {
         Some((here.value - rest.value, here.derivative))
     }
 
+    /// Names of the seats and their places from the centre of gravity with payload, ahead, to the left and above [m].
+    pub(crate) fn seats(&self) -> Vec<(String, [f64; 3])> {
+        let (spec, numbers) = (self.car.spec(), self.car.numbers());
+        let value = |slot: Slot| numbers[slot.0];
+        let [x, y, z] = self.at::<f64>(numbers).parts.centre;
+        let place = |seat: &crate::spec::Seat<Slot>| {
+            let left = value(seat.y) - value(spec.body.cg_offset);
+            [value(seat.x) - x, left - y, value(seat.height) - value(spec.body.cg_height) - z]
+        };
+        spec.seats.0.iter().map(|(name, seat)| (name.clone(), place(seat))).collect()
+    }
+
     /// Share of the lateral load transfer that the front axle takes; NaN without any.
     pub fn front_transfer(&self) -> f64 {
         let load = self.tyre_load.as_array();

@@ -340,6 +340,11 @@ impl LinearSystem {
         (0..self.coordinates.len()).map(unit).collect()
     }
 
+    /// Coordinates that are volumes moved through lines.
+    pub(crate) fn volumes(&self) -> &[usize] {
+        &self.volumes
+    }
+
     /// The elements that the matrices are made of.
     pub fn elements(&self) -> &[Element] {
         &self.elements
