@@ -6,7 +6,7 @@ The generator writes such annotations out as they are: usage `python stub_import
 import sys
 from pathlib import Path
 
-MODULES = ("collections.abc", "numpy", "numpy.typing", "pandas", "xarray")
+MODULES = ("collections.abc", "typing", "numpy", "numpy.typing", "pandas", "xarray")
 IMPORTS = "".join(f"import {module}\n" for module in MODULES)
 
 

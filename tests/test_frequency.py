@@ -61,8 +61,8 @@ def test_volume_put_in_raises_pressure_and_body():
     # At rest a circuit has one pressure.
     np.testing.assert_allclose(at_rest, at_rest[0], rtol=1e-9)
     assert at_rest[0].real > 0
-    # Reciprocity of a symmetric system: the pressure that a force brings about over its force is the heave that a
-    # volume brings about over its volume, sign reversed.
+    # Reciprocity of a symmetric system: pressure per force on the body is heave per volume put in,
+    # sign reversed.
     pressure = answer.response[outputs.index("pressure.circuits.left"), inputs.index("body.z"), 1]
     acceleration = answer.response[outputs.index("body_acceleration.z"), volume, 1]
     heave = acceleration / (2j * np.pi * 1e-4) ** 2

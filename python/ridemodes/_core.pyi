@@ -3,6 +3,7 @@ Compiled core of ridemodes.
 """
 
 import collections.abc
+import typing
 import numpy
 import numpy.typing
 import pandas

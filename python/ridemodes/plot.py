@@ -357,11 +357,12 @@ def attitude(state: OperatingPoint, *, ax: Axes | None = None, scale: float = 1.
     body = height + z - x * pitch + y * roll
     wheels = state.wheels * scale
     artists: list[Artist] = []
-    for level, style in (
+    outlines: list[tuple[Any, dict[str, Any]]] = [
         (np.full(4, height), {"color": GREY, "linestyle": ":", "linewidth": 1}),
         (body, {"color": BLUE, "linewidth": 2, "label": "body"}),
         (wheels, {"color": ORANGE, "linewidth": 1, "marker": "o", "markersize": 7}),
-    ):
+    ]
+    for level, style in outlines:
         across, up = _oblique(x, y, level)
         artists.extend(ax.plot(across[ROUND], up[ROUND], **style))
     most = max(state.tyre_load.max(), 1.0)

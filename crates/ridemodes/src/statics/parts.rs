@@ -455,7 +455,7 @@ fn regions<T: Scalar>(
     let Some(oil) = &spec.oil else { return Vec::new() };
     let is_true = |flag: Option<Slot>| flag.is_some_and(|flag| numbers[flag.0].value() == 1.0);
     let region_of =
-        network.regions(|line| !is_true(network.lines[line].closed) && !(fast && is_true(network.lines[line].slow)));
+        network.regions(|line| !(is_true(network.lines[line].closed) || fast && is_true(network.lines[line].slow)));
     let count = region_of.iter().max().map_or(0, |last| last + 1);
     let design_temperature = value(spec.temperature);
     let temperature = condition.temperature.map_or(design_temperature, T::constant);
