@@ -946,6 +946,11 @@ class OperatingPoint:
         Sprung corner loads [N].
         """
     @property
+    def cross_weight(self, /) -> float:
+        """
+        Cross weight of the tyre loads, (FR + RL) over all.
+        """
+    @property
     def deflection(self, /) -> NDArray[float64]:
         """
         Suspension deflections from the design condition, bump positive [m].
@@ -954,6 +959,11 @@ class OperatingPoint:
     def friction(self, /) -> NDArray[float64]:
         """
         Dry friction of damper and cylinder at each wheel, plus or minus [N].
+        """
+    @property
+    def front_transfer(self, /) -> float:
+        """
+        Front share of the lateral load transfer; NaN without any.
         """
     @property
     def gas_volume(self, /) -> NDArray[float64]:

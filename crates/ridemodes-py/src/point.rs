@@ -312,6 +312,18 @@ result_class! {
         self.core.limits.iter().map(|limit| (limit.name.clone(), Limit::new(limit.clone()))).collect()
     }
 
+    /// Front share of the lateral load transfer; NaN without any.
+    #[getter]
+    fn front_transfer(&self) -> f64 {
+        self.core.front_transfer()
+    }
+
+    /// Cross weight of the tyre loads, (FR + RL) over all.
+    #[getter]
+    fn cross_weight(&self) -> f64 {
+        self.core.cross_weight()
+    }
+
     /// Limits that are passed.
     #[getter]
     fn passed(&self) -> Vec<Limit> {

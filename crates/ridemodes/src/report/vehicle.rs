@@ -103,6 +103,7 @@ impl OperatingPoint {
     /// Corner loads and circuits, for people.
     pub fn tables(&self) -> Tables {
         let mut tables = vec![self.corner_table()];
+        tables.extend(self.travel_table());
         if !self.circuits.is_empty() {
             tables.push(self.circuit_table());
         }
@@ -163,6 +164,35 @@ impl OperatingPoint {
             table = table.note(format!("warning: {warning}"));
         }
         table
+    }
+
+    /// Travel used and left at each corner; none without stops and strokes, and at the design condition.
+    pub fn travel_table(&self) -> Option<Table> {
+        let mut table = Table::new(
+            "Travel used and left",
+            &["corner", "deflection mm", "bump stop left mm", "rebound stop left mm", "piston mm", "stroke left mm"],
+        );
+        let mut any = false;
+        for corner in CORNERS {
+            let name = corner.name();
+            let mut margin = |key: &str| {
+                let limit = self.limits.iter().find(|limit| limit.name == format!("{name}.{key}"));
+                any |= limit.is_some();
+                limit.map_or_else(|| "–".to_owned(), |limit| fixed(1e3 * limit.margin, 1))
+            };
+            let (bump, rebound, stroke) = (margin("bump_stop"), margin("rebound_stop"), margin("stroke"));
+            let piston = self.piston_travel[corner];
+            table.row([
+                name.replace('_', " "),
+                fixed(1e3 * self.deflection[corner], 1),
+                bump,
+                rebound,
+                if piston.is_nan() { "–".into() } else { fixed(1e3 * piston, 1) },
+                stroke,
+            ]);
+        }
+        let table = table.note("stops and pistons in their own travel; less than zero: beyond");
+        (any && !self.condition.is_design()).then_some(table)
     }
 
     /// Lines that only balance slowly; none, no table.
