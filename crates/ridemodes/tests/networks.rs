@@ -339,6 +339,8 @@ fn lock_out_leaves_the_trapped_oil() {
     assert_relative_eq!(trapped[0].pressure, 30e5);
     assert_relative_eq!(trapped[0].compliance, volume / 1.4e9, max_relative = 1e-12);
     assert!(trapped[0].nodes.contains(&"circuits.left".to_owned()));
+    let alone = lin.point().warnings.iter().filter(|warning| warning.contains("no way to an accumulator")).count();
+    assert_eq!(alone, 2);
     assert!(open.point().closed_off.is_empty());
     // Incompressible, there is nothing left to give.
     car["oil"].as_object_mut().unwrap().remove("bulk_modulus");

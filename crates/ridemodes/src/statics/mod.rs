@@ -188,6 +188,9 @@ impl Vehicle {
     }
 }
 
+/// A line that balances faster than this is felt by the body and not slow [s].
+const SLOW: f64 = 1.0;
+
 impl OperatingPoint {
     /// Reads off everything from a solution.
     pub(crate) fn new(
@@ -303,6 +306,18 @@ impl OperatingPoint {
         };
         point.limits = limits::limits(&point);
         point.warnings = limits::warnings(&point);
+        let without_gas = parts.regions.iter().filter(|region| !region.chambers.is_empty() && region.gases.is_empty());
+        for line in point.slow_lines.iter().filter(|line| line.time_constant < SLOW) {
+            point.warnings.push(format!(
+                "{}: marked slow, but it balances in {:.2e} s; results take it as shut",
+                line.name, line.time_constant
+            ));
+        }
+        point.warnings.extend(without_gas.map(|region| {
+            let names: Vec<&str> = region.nodes.iter().map(|&node| &*network.nodes[node].name).collect();
+            let more = if names.len() > 1 { format!(" and {} more nodes", names.len() - 1) } else { String::new() };
+            format!("{}{more}: no way to an accumulator; only the oil's own compressibility gives", names[0])
+        }));
         point
     }
 }
@@ -436,12 +451,21 @@ impl OperatingPoint {
     pub(crate) fn assumptions(&self, shut: bool) -> Vec<String> {
         let slow = self.slow_lines.iter().map(|line| {
             let state = if shut { "is shut, as a slow line is to vibration" } else { "is slow and flows" };
-            format!("{} {state}; its time constant is {:.3} s with the wheels held", line.name, line.time_constant)
+            let time = line.time_constant;
+            let time = if time == 0.0 || time >= 0.1 { format!("{time:.3}") } else { format!("{time:.2e}") };
+            format!("{} {state}; its time constant is {time} s with the wheels held", line.name)
         });
         let mut closed: Vec<&String> = self.closed_off.iter().flat_map(|part| &part.lines).collect();
         closed.sort_unstable();
         closed.dedup();
-        let closed = closed.into_iter().map(|line| format!("{line} is closed; the oil behind it is trapped"));
+        let traps = |line: &String| {
+            self.closed_off.iter().any(|part| part.accumulators.is_empty() && part.lines.contains(line))
+        };
+        let closed = closed.into_iter().map(|line| {
+            let what =
+                if traps(line) { "is closed; oil without an accumulator is trapped behind it" } else { "is closed" };
+            format!("{line} {what}")
+        });
         let network = &self.car.structure().network;
         let spec = self.car.spec();
         let tables = CORNERS

@@ -62,7 +62,7 @@ pub(super) fn check(spec: &Spec<Slot>, parameters: &[Parameter], numbers: &[f64]
             rules.broken(line.throttle, "a hose needs length and bore, or data", "give length and bore, or volume");
         }
         rules.joined(spec, &line.from, &line.to, line.closed.0);
-        let resists = [Some(line.throttle), line.resistance].iter().flatten().any(|&slot| rules.value(slot) > 0.0);
+        let resists = [Some(line.throttle), line.resistance].iter().flatten().any(|&slot| rules.value(slot) != 0.0);
         if rules.value(line.slow.0) == 1.0 && !resists && line.valve.is_none() && line.length.is_none() {
             rules.broken(line.throttle, "a slow line needs a resistance", "give it a throttle");
         }
@@ -194,9 +194,11 @@ impl Rules<'_> {
         }
         if let Some(k) = (1..at.len()).find(|&k| at[k] <= at[k - 1]) {
             self.broken(x[k], "must be more than the entry before", "list the points in ascending order");
-        } else if let Some(k) = (1..own.len()).find(|&k| own[k] < own[k - 1]) {
+        }
+        if let Some(k) = (1..own.len()).find(|&k| own[k] < own[k - 1]) {
             self.broken(y[k], "must not be less than the entry before", "resistance rises with speed");
-        } else if !at.iter().zip(&own).any(|(x, y)| *x == 0.0 && *y == 0.0) {
+        }
+        if !at.iter().zip(&own).any(|(x, y)| *x == 0.0 && *y == 0.0) {
             self.broken(
                 y[0],
                 "the table must hold the point 0, 0",
